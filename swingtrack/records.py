@@ -404,6 +404,7 @@ class Air:
     shape: str
     dimensions: Mapping[str, Quantity] = field(default_factory=dict)
     density: Quantity | None = None
+    face: str | None = None  # "broadside" | "edgewise"
 
 
 @dataclass(frozen=True)
@@ -495,7 +496,7 @@ class Inertia:
 
 @dataclass(frozen=True)
 class Trial:
-    """One hand-timed run. `verdict` is "ok", "miscount" or "outlier"; `swings_that_fit` where another fits."""
+    """One hand-timed run. `verdict`: "ok", "miscount" or "outlier"; `swings_that_fit` where another fits."""
 
     swings: int
     seconds: float
@@ -507,7 +508,7 @@ class Trial:
 
 @dataclass(frozen=True)
 class AgainstClip:
-    """Stopwatch runs beside a clip: normalised error E_n, bias of the hand in seconds a run, plain verdict."""
+    """Stopwatch runs beside a clip: normalised error E_n, bias of the hand in seconds a run, verdict."""
 
     normalised_error: float
     bias_s: Quantity | None
