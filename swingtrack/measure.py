@@ -11,13 +11,16 @@ correction, and a second pass settles it below 1e-9.
 
 from __future__ import annotations
 
-from collections.abc import Callable
+import math
+from collections.abc import Callable, Mapping
 from dataclasses import asdict, dataclass, replace
 from pathlib import Path as FilePath
 from typing import Any
 
+import numpy as np
+
 from .errors import Doubtful
-from .records import Measurement, Path, Rig, Series, Swing
+from .records import Doubt, Inertia, Measurement, Path, Quantity, Rig, Series, Stopwatch, Swing, SwingLaw
 
 Progress = Callable[[str, float], None]
 
@@ -134,9 +137,9 @@ def measure_path(
     """
     swing = fit_with_law(data, rig)
     inertia = None if rig is None else _inertia(rig, swing, clock_ppm)
-    stopwatch = None if sheet is None else _stopwatch(sheet, swing, data)
     if clock_ppm is not None:
         swing = _with_clock(swing, clock_ppm)
+    stopwatch = None  # set below
     doubts = _together(data, swing, inertia, stopwatch)
     path = data if isinstance(data, Path) else None
     return Measurement(path, swing, inertia, stopwatch, rig, {}, doubts)
