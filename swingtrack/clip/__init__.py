@@ -2,17 +2,20 @@
 
 from __future__ import annotations
 
+from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from .reader import Clip, open_clip
+    from .still import draw_still, encode_png
 
-__all__ = ["Clip", "open_clip"]
+_HOMES = {"Clip": "reader", "open_clip": "reader", "draw_still": "still", "encode_png": "still"}
+
+__all__ = ["Clip", "draw_still", "encode_png", "open_clip"]
 
 
 def __getattr__(name: str) -> Any:
-    if name in ("Clip", "open_clip"):
-        from . import reader
-
-        return getattr(reader, name)
+    """Load each name's module on first use."""
+    if name in _HOMES:
+        return getattr(import_module(f".{_HOMES[name]}", __name__), name)
     raise AttributeError(f"module {__name__!r} has no attribute {name!r}")

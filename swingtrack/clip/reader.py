@@ -79,11 +79,32 @@ class Clip:
                 return y_px, h - x_px
         return x_px, y_px
 
+    def first_image(self) -> Any:
+        """The first picture, upright, (height, width, 3) BGR uint8."""
+        with av.open(str(self.file)) as container:
+            frame = next(container.decode(container.streams.video[0]))
+            image = frame.to_ndarray(format="bgr24")
+        return np.ascontiguousarray(np.rot90(image, k=-(self.rotation_deg // 90) % 4))
+
     def facts(self) -> ClipFacts:
         sha = hashlib.sha256(self.file.read_bytes()).hexdigest()
         t = np.array(self._times)
-        return ClipFacts(str(self.file), sha, self._codec, self.width, self.height, self.rotation_deg,
-                         self._count, float(t[-1] if t.size else 0), self._rate, None, 1.0, 0, 0, 0.0)
+        return ClipFacts(
+            str(self.file),
+            sha,
+            self._codec,
+            self.width,
+            self.height,
+            self.rotation_deg,
+            self._count,
+            float(t[-1] if t.size else 0),
+            self._rate,
+            None,
+            1.0,
+            0,
+            0,
+            0.0,
+        )
 
     def doubts(self) -> tuple[Doubt, ...]:
         return ()

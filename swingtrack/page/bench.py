@@ -87,7 +87,9 @@ class Bench:
             aside.rename(self.root / "clips" / f"{key}-{safe_name(name)}")
         except OSError as error:
             raise BadInput(
-                f"The clip can't be stored: {error.strerror}.", "Needed: room on the disk.", "Delete old clips."
+                f"The clip can't be stored: {error.strerror}.",
+                "Needed: room on the disk.",
+                "Delete old clips.",
             ) from error
         finally:
             aside.unlink(missing_ok=True)
@@ -122,7 +124,9 @@ class Bench:
             folder = self.root / "results" / (f"{stem}.swing" if number == 1 else f"{stem}-{number}.swing")
             if not folder.exists():
                 return folder
-        raise BadInput("There are ten thousand results of this name.", "Needed: a free name.", "Rename the clip.")
+        raise BadInput(
+            "There are ten thousand results of this name.", "Needed: a free name.", "Rename the clip."
+        )
 
     def delete_result(self, name: str) -> None:
         """Remove a result folder at the user's word."""
@@ -133,7 +137,9 @@ class Bench:
         import json
 
         listed = []
-        for folder in sorted((self.root / "results").glob("*.swing"), key=lambda f: f.stat().st_mtime, reverse=True):
+        for folder in sorted(
+            (self.root / "results").glob("*.swing"), key=lambda f: f.stat().st_mtime, reverse=True
+        ):
             try:
                 document = json.loads((folder / "result.json").read_bytes())
                 swing, inertia = document.get("swing") or {}, document.get("inertia") or {}

@@ -1,0 +1,2 @@
+def combine() -> None:
+    """x"""

@@ -1,0 +1,2 @@
+def plan() -> None:
+    """x"""

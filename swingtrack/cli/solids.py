@@ -1,0 +1,2 @@
+def solids() -> None:
+    """x"""
