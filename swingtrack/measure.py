@@ -19,12 +19,13 @@ from typing import Any
 
 import numpy as np
 
-from .errors import Doubtful
+from .errors import BadInput, Doubtful
 from .records import Doubt, Inertia, Measurement, Path, Quantity, Rig, Series, Stopwatch, Swing, SwingLaw
 
 Progress = Callable[[str, float], None]
 
 CLOCK_LIMITS_PPM = 50.0  # phones are usually within 20, computers' median is 78: docs/uncertainty.md
+HAND_AMPLITUDE_RAD = math.radians(10.0)  # what a hand starts as a rule: common practice, no source
 LAW_BEYOND_AMPLITUDE = (
     1.25  # how far past the largest swing seen the law is worked out, so that a fit can roam
 )
@@ -139,7 +140,7 @@ def measure_path(
     inertia = None if rig is None else _inertia(rig, swing, clock_ppm)
     if clock_ppm is not None:
         swing = _with_clock(swing, clock_ppm)
-    stopwatch = None  # set below
+    stopwatch = None if sheet is None else _stopwatch(sheet, swing)
     doubts = _together(data, swing, inertia, stopwatch)
     path = data if isinstance(data, Path) else None
     return Measurement(path, swing, inertia, stopwatch, rig, {}, doubts)
@@ -189,10 +190,59 @@ def measure_trials(
 
     `against` is a `result_file.StoredResult` of a clip of the same swing.
     """
-    from .signal.stopwatch import read_trials
+    from .signal.stopwatch import assess_trials, compare_with_clip, read_trials
 
-    sheet = read_trials(trials)
-    raise NotImplementedError(sheet)
+    stopwatch = assess_trials(read_trials(trials), target_relative_u=target_relative_u)
+    inputs: dict[str, Any] = {"stopwatch": str(trials)}
+    if against is not None:
+        stopwatch = compare_with_clip(stopwatch, _period_in_clip(against))
+        inputs["against"] = against.file
+    if rig is None:
+        return Measurement(None, None, None, stopwatch, None, inputs, stopwatch.doubts)
+    inertia = moment_by_hand(rig, stopwatch.period)
+    inputs["rig"] = rig.source
+    return Measurement(None, None, inertia, stopwatch, rig, inputs, (*inertia.doubts, *stopwatch.doubts))
+
+
+def moment_by_hand(rig: Rig, period: Quantity) -> Inertia:
+    """The moment of inertia from a hand-timed period, whose amplitude nobody recorded.
+
+    A swing of A rad lengthens the period by about A²/16 (pendulum, T/T0 = 1 + A²/16 + …); up to `HAND_AMPLITUDE`
+    is allowed for, as limits.
+    """
+    from .inertia import SwingFacts, moment_of_inertia
+
+    stretch = HAND_AMPLITUDE_RAD**2 / 16.0 / math.sqrt(3.0)
+    widened = replace(period, u=math.hypot(period.u, stretch * period.value), text="")
+    inertia = moment_of_inertia(rig, widened, facts=SwingFacts(clock_relative_u=0.0))
+    doubt = Doubt(
+        "amplitude-unknown",
+        "Nobody recorded the amplitude of the hand-timed swings; up to 10° is allowed for in the period.",
+        "Film the swing, or keep below 5°, where the period is 0.05 % too long at most.",
+    )
+    return replace(inertia, doubts=(*inertia.doubts, doubt))
+
+
+def _period_in_clip(stored: Any) -> Quantity:
+    entry = (stored.document.get("swing") or {}).get("period_in_clip_s")
+    if entry is None:
+        raise BadInput(
+            f"{stored.file} has no period of a clip.", "Needed: the result of swingtrack measure or fit."
+        )
+    return Quantity(float(entry["value"]), float(entry["u"]), "s", dof=float(entry.get("dof", math.inf)))
+
+
+def _stopwatch(sheet: Any, swing: Swing) -> Stopwatch:
+    """Judge the runs and hold each against the clip at the amplitude at which it was timed, where that is known."""
+    from .signal.stopwatch import assess_trials, compare_with_clip
+
+    trace, mean = swing.trace, swing.period_in_clip.value
+
+    def period_between(start_s: float, end_s: float) -> float:
+        inside = (trace.cycle_t_s >= start_s) & (trace.cycle_t_s <= end_s)
+        return float(trace.cycle_period_s[inside].mean()) if inside.any() else mean
+
+    return compare_with_clip(assess_trials(sheet), swing.period_in_clip, period_between=period_between)
 
 
 def _largest_swing(data: Path | Series) -> float:

@@ -6,12 +6,19 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
+    from .marked import write_marked_clip
     from .reader import Clip, open_clip
     from .still import draw_still, encode_png
 
-_HOMES = {"Clip": "reader", "open_clip": "reader", "draw_still": "still", "encode_png": "still"}
+_HOMES = {
+    "Clip": "reader",
+    "open_clip": "reader",
+    "draw_still": "still",
+    "encode_png": "still",
+    "write_marked_clip": "marked",
+}
 
-__all__ = ["Clip", "draw_still", "encode_png", "open_clip"]
+__all__ = ["Clip", "draw_still", "encode_png", "open_clip", "write_marked_clip"]
 
 
 def __getattr__(name: str) -> Any:

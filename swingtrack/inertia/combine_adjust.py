@@ -25,8 +25,10 @@ DRAWS = 50_000  # ends of a 95 % interval to about 1 % of u
 COMPLEX_STEP = 1e-30
 ROUNDING = 1e-12  # relative; keeps the weights finite where a run claims no uncertainty at all
 MAX_STEPS = 60
-SCATTER = "scatter of "  # inputs of this name are the scatter between runs, and make one budget line
-SCATTER_LINE = "scatter between runs"
+SCATTER = "scatter of "
+TILT = "tilt of "
+# Inputs of these names, one or two a run, make one budget line together.
+GROUPED = {SCATTER: "scatter between runs", TILT: "directions of the axes"}
 
 
 @dataclass(frozen=True, eq=False)
@@ -43,8 +45,8 @@ class Adjusted:
     covariance : (q, q) float
     projector : (q, m) float
         H of the estimating equation H F(p, x) = 0.
-    misfit : (m,) float
-        F at the measured inputs.
+    misfit, misfit_u : (m,) float
+        What the measured inputs leave of F at the solution, and its standard uncertainty (less what the fit took).
     chi2 : float
     dof : int
     """
@@ -116,9 +118,8 @@ def adjust(conditions: Conditions, inputs: Mapping[str, Quantity], start: Sequen
         p, x = p + step, moved
         if settled:
             projector = inverse @ np.linalg.inv(whitened) / scale
-            at_measured = np.array(
-                [float(value) for value in conditions(p, dict(zip(names, measured, strict=True)))]
-            )
+            unwhiten = scale[:, None] * whitened
+            free = np.eye(len(f)) - rows @ inverse
             return Adjusted(
                 conditions=conditions,
                 inputs=dict(inputs),
@@ -126,8 +127,8 @@ def adjust(conditions: Conditions, inputs: Mapping[str, Quantity], start: Sequen
                 sensitivity=-projector @ b,
                 covariance=inverse @ inverse.T,
                 projector=projector,
-                misfit=at_measured,
-                misfit_u=scale,
+                misfit=unwhiten @ left,
+                misfit_u=np.sqrt(np.maximum(np.einsum("ij,jk,ik->i", unwhiten, free, unwhiten), 0.0)),
                 chi2=float(left @ left),
                 dof=len(f) - len(p),
             )
@@ -157,23 +158,28 @@ def derive(adjusted: Adjusted, function: Function, unit: str) -> Propagated:
 def budget_lines(
     inputs: Mapping[str, Quantity], slopes: Floats, *, scatter_dof: int = 0
 ) -> tuple[BudgetLine, ...]:
-    """Budget lines of sensitivities (n,); the runs' scatter, one number estimated once, is a single line."""
+    """Budget lines of sensitivities (n,); the runs' scatter, one number estimated once, is a single line.
+
+    So are the tilts of the axes; for both the sensitivity is the root of the sum of squares.
+    """
     contributions = {name: abs(slope) * q.u for (name, q), slope in zip(inputs.items(), slopes, strict=True)}
     total = math.fsum(c**2 for c in contributions.values())
-    lines, scatter, scatter_u = [], 0.0, 0.0
+    lines = []
+    grouped: dict[str, list[tuple[float, float]]] = {}
     for (name, q), slope in zip(inputs.items(), slopes, strict=True):
         part = contributions[name] ** 2
-        if name.startswith(SCATTER):
-            scatter, scatter_u = scatter + part, q.u
+        title = next((title for start, title in GROUPED.items() if name.startswith(start)), None)
+        if title is not None:
+            grouped.setdefault(title, []).append((part, q.u))
             continue
         share = part / total if total > 0.0 else 0.0
         lines.append(BudgetLine(name, q.value, q.u, q.unit, float(slope), contributions[name], share, q.dof))
-    if scatter_u > 0.0:
-        root = math.sqrt(scatter)
-        dof = float(max(scatter_dof, 1))
-        lines.append(
-            BudgetLine(SCATTER_LINE, 0.0, scatter_u, "1", root / scatter_u, root, scatter / total, dof)
-        )
+    for title, parts in grouped.items():
+        root, u = math.sqrt(math.fsum(part for part, _ in parts)), max(u for _, u in parts)
+        scattered = title == GROUPED[SCATTER]
+        dof = float(max(scatter_dof, 1)) if scattered else math.inf
+        slope, share = (root / u, root**2 / total) if u > 0.0 and total > 0.0 else (0.0, 0.0)
+        lines.append(BudgetLine(title, 0.0, u, "1" if scattered else "rad", slope, root, share, dof))
     return tuple(lines)
 
 
@@ -209,6 +215,11 @@ def draw_unknowns(
 def check_by_draws(adjusted: Adjusted, function: Function, linear: Quantity) -> MonteCarlo:
     """Monte Carlo beside the law of propagation, and whether they agree (JCGM 101, 8.1, one significant digit)."""
     values = np.asarray(function(*draw_unknowns(adjusted)), dtype=np.float64)
+    return judge_draws(values, linear)
+
+
+def judge_draws(values: Floats, linear: Quantity) -> MonteCarlo:
+    """Draws of a result beside its linear value: both ends of the 95 % interval within half a digit of u, or not."""
     low, high = interval(values)
     tolerance = 0.5 * 10.0 ** math.floor(math.log10(linear.u)) if linear.u > 0.0 else 0.0
     half = coverage_factor(linear.dof, 95.0) * linear.u

@@ -1,13 +1,14 @@
 """The measured inputs of several runs as one set, in which an input that runs share appears once.
 
 Two runs share an input where their rigs state the very same number for it (value, uncertainty and text): the same
-bench, measured once. The mass is shared between runs of the same article alone.
+bench, measured once. The mass and the place of the centre of mass are shared between runs of the same article (about
+the same axis) alone.
 """
 
 from __future__ import annotations
 
 import math
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Collection, Mapping, Sequence
 from dataclasses import dataclass, replace
 from typing import Any
 
@@ -17,6 +18,8 @@ from .combine import Run
 from .combine_adjust import SCATTER
 from .corrections import air_correction
 from .suspension import Model, model_of
+
+OF_WHAT_HANGS = {"period", "second_period", "clock", "mass", "air factor", "centre_offset", "pivot_to_centre"}
 
 
 @dataclass(frozen=True)
@@ -31,6 +34,8 @@ class JointInputs:
         Every independent input once.
     names : for each run, the joint name of each key of its formula
     air : for each run, the added moment of the air, kg m², by which the input "air factor" is multiplied
+    rule : callable, optional
+        (run, x) → what stands for the run's moment in tables and scatter, where the formula of the suspension is not used.
     """
 
     runs: tuple[Run, ...]
@@ -38,6 +43,7 @@ class JointInputs:
     quantities: Mapping[str, Quantity]
     names: tuple[Mapping[str, str], ...]
     air: tuple[float, ...]
+    rule: Callable[[int, Mapping[str, Any]], Any] | None = None
 
     def local(self, run: int, x: Mapping[str, Any]) -> dict[str, Any]:
         """The inputs of one run's formula out of the joint ones, the clock's error in the period."""
@@ -48,11 +54,16 @@ class JointInputs:
 
     def moment(self, run: int, x: Mapping[str, Any]) -> Any:
         """Moment of inertia of one run alone, kg m², less its air; with its part of the scatter between runs."""
+        if self.rule is not None:
+            return self.rule(run, x) * self.scatter(run, x)
         here = self.local(run, x)
         moment = self.models[run].moment(here)
-        if "air factor" in here:
-            moment = moment - self.air[run] * here["air factor"]
-        return moment * self.scatter(run, x)
+        return (moment - self.carried_air(run, x)) * self.scatter(run, x)
+
+    def carried_air(self, run: int, x: Mapping[str, Any]) -> Any:
+        """Moment of the air that swings along, kg m²; 0 where the rig names no shape."""
+        name = self.names[run].get("air factor")
+        return 0.0 if name is None else self.air[run] * x[name]
 
     def scatter(self, run: int, x: Mapping[str, Any]) -> Any:
         """1 + the scatter of this run, where such an input was added."""
@@ -66,18 +77,20 @@ class JointInputs:
         """The same with further inputs."""
         return replace(self, quantities={**self.quantities, **more})
 
-    def differing(self, keys: Sequence[str] | None = None) -> tuple[str, ...]:
-        """Keys of the suspension for which the runs do not all state the same number."""
-        looked = keys or [key for names in self.names for key in names]
-        own = {"period", "clock", "mass", "air factor"}
-        found = {
-            key for key in looked if key not in own and len({names.get(key) for names in self.names}) > 1
-        }
-        return tuple(sorted(found))
+    def not_shared(self) -> tuple[str, ...]:
+        """Keys of the bench itself (not of what hangs there) for which the runs state different numbers."""
+        keys = {key for names in self.names for key in names} - OF_WHAT_HANGS
+        return tuple(sorted(k for k in keys if len({names.get(k) for names in self.names}) > 1))
 
 
-def join_inputs(runs: Sequence[Run]) -> JointInputs:
+def join_inputs(runs: Sequence[Run], *, keys: Collection[str] | None = None) -> JointInputs:
     """Collect the inputs of all runs.
+
+    Parameters
+    ----------
+    runs : sequence of Run
+    keys : collection of str, optional
+        Of the suspension's inputs take only these; period, clock and air are always taken.
 
     Raises
     ------
@@ -92,8 +105,8 @@ def join_inputs(runs: Sequence[Run]) -> JointInputs:
     for run, model in zip(runs, models, strict=True):
         model.check(run.rig)
         here = {}
-        own = _inputs_of(run, model)
-        air.append(added_moment(run.rig.air) if "air factor" in own else 0.0)
+        own = _inputs_of(run, model, keys)
+        air.append(_air_moment(run))
         for key, quantity in own.items():
             mark = _mark(run, key, quantity)
             found.setdefault(mark, quantity)
@@ -122,21 +135,36 @@ def doubts_of(runs: Sequence[Run]) -> tuple[Doubt, ...]:
     )
 
 
+def not_shared_doubts(joint: JointInputs, advice: str) -> tuple[Doubt, ...]:
+    """Where the bench differs from run to run nothing cancels."""
+    differing = ", ".join(key.replace("_", " ") for key in joint.not_shared())
+    if not differing:
+        return ()
+    message = f"The runs do not state the same {differing}: nothing cancels there."
+    return (Doubt("suspension-not-shared", message, advice),)
+
+
 def own_period(run: Run) -> Quantity:
     """The period with the clock's part, which runs share, taken out of its uncertainty."""
     clock = run.clock_relative_u * run.period.value
     return replace(run.period, u=math.sqrt(max(run.period.u**2 - clock**2, 0.0)))
 
 
-def _inputs_of(run: Run, model: Model) -> dict[str, Quantity]:
-    inputs = {**model.inputs(run.rig), "period": own_period(run)}
+def _inputs_of(run: Run, model: Model, keys: Collection[str] | None) -> dict[str, Quantity]:
+    inputs = {k: q for k, q in model.inputs(run.rig).items() if keys is None or k in keys}
+    inputs["period"] = own_period(run)
     if run.clock_relative_u > 0.0:
         inputs["clock"] = Quantity(0.0, run.clock_relative_u, "1", shape="rectangular")
-    if run.rig.air is not None and added_moment(run.rig.air) > 0.0:
-        # a correction of 100 % of 1 kg m² gives the relative doubt of the coefficient alone
-        u = air_correction(run.rig, added_moment(run.rig.air)).u
+    carried = _air_moment(run)
+    if carried > 0.0:
+        # a correction of the whole of what it corrects: its u is the relative doubt of the coefficient
+        u = air_correction(run.rig, carried).u
         inputs["air factor"] = Quantity(1.0, u, "1", shape="rectangular")
     return inputs
+
+
+def _air_moment(run: Run) -> float:
+    return 0.0 if run.rig.air is None else added_moment(run.rig.air)
 
 
 def _mark(run: Run, key: str, quantity: Quantity) -> tuple[Any, ...]:
@@ -148,6 +176,8 @@ def _mark(run: Run, key: str, quantity: Quantity) -> tuple[Any, ...]:
         return (*stated, run.clock)
     if key == "mass":
         return (*stated, run.rig.article.name)
+    if key in ("centre_offset", "pivot_to_centre"):
+        return (*stated, run.rig.article.name, run.rig.article.axis)
     if key == "air factor":
         return (*stated, run.rig.air.shape if run.rig.air else "")
     return stated

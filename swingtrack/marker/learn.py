@@ -25,6 +25,9 @@ FEWEST_SLOW = 8
 MOST_SLOW = 40
 SHARP_PX = 1.2
 
+# The shutter may be open all the time between two frames, and a lens's own blur may look like a little more.
+LONGEST_EXPOSURE = 1.05
+
 # Below this chroma contrast in levels a dot counts as grey.
 LEAST_CHROMA = 6.0
 
@@ -201,7 +204,7 @@ def _choose_exposure(
     longest_s: float,
 ) -> None:
     """The exposure that leaves least over in the fastest pictures, near the one by moments first."""
-    fast = order[-max(4, len(order) // 12) :][::2][:8]
+    fast = order[-max(4, len(order) // 12) :][::2][:6]
     way = float(np.max(np.hypot(*velocity[fast].T), initial=0.0)) * longest_s
     if way < 1.0:
         model.exposure_s = 0.0
@@ -214,17 +217,30 @@ def _choose_exposure(
         misfits = [f.misfit if f is not None and f.gain > 0.2 else 9.0 for f in found]
         return float(np.median(misfits))
 
-    step = min(0.2, max(1.5 / way, 0.05)) * longest_s
-    trials = {
-        e: left(e)
-        for e in np.clip(model.exposure_s + step * np.array([-2.0, -1.0, 0.0, 1.0, 2.0]), 0.0, longest_s)
-    }
-    trials.setdefault(0.0, left(0.0))
-    best = min(trials, key=lambda e: trials[e])
-    for e in (best - step / 2, best + step / 2):
-        if 0.0 <= e <= longest_s:
-            trials[e] = left(e)
-    model.exposure_s = float(min(trials, key=lambda e: trials[e]))
+    trials: dict[float, float] = {}
+
+    def tried(exposure: float) -> float:
+        if exposure not in trials:
+            trials[exposure] = left(exposure)
+        return trials[exposure]
+
+    best, step = model.exposure_s, 0.12 * longest_s
+    tried(best)
+    while step * way / longest_s > 0.4:
+        nearest = [e for e in (best - step, best + step) if 0.0 <= e <= LONGEST_EXPOSURE * longest_s]
+        better = min([best, *nearest], key=tried)
+        if better == best:
+            # The parabola through three trials says where between them the least lies.
+            if len(nearest) == 2:
+                low, high = tried(nearest[0]) ** 2, tried(nearest[1]) ** 2
+                bend = low + high - 2 * tried(best) ** 2
+                if bend > 0:
+                    middle = best + 0.5 * step * float(np.clip((low - high) / bend, -0.9, 0.9))
+                    best = min([best, middle], key=tried)
+            step *= 0.4
+        else:
+            best = better
+    model.exposure_s = float(best)
     model.forget()
 
 

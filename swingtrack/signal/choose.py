@@ -15,14 +15,20 @@ import numpy as np
 
 from swingtrack.records import Floats
 from swingtrack.signal.fitting import Fitted, fit_model, fit_robustly
-from swingtrack.signal.modes import ModeFound, add_mode, find_mode
 from swingtrack.signal.model import SLOW, SwingModel, mode_name
+from swingtrack.signal.modes import RESOLVED_BEATS, SAME_BEATS, ModeFound, add_mode, find_mode
 from swingtrack.signal.noise import Noise, measure_noise
 
 # A step with less than this in hand is not taken: "strong" evidence (difference of 6 in the criterion).
 EVIDENCE = 6.0
 DAMPING_PARAMETERS = {"viscous": "zeta", "quadratic": "beta", "dry": "dry"}
 MOST_TERMS = 12
+# Residuals below this share of the amplitude are finer than any record; terms found in them are the solver's own.
+FINE_ENOUGH = 1e-7
+# A swarm of wander reaches this far about the swing.
+SWARM_BEATS = 6.0
+# A mode that is hardly resolved and larger than this share of the swing is the swing itself, in two parts.
+LARGEST_NEAR = 0.6
 # Two motions whose beat makes fewer turns than this in the clip are hardly told apart.
 CRAMPED_BEATS = 2.0
 # The rest place may wander at up to this share of the swing's frequency.
@@ -37,6 +43,7 @@ class Choices:
     most_modes: int
     view_shape: bool
     outlier_limit: float
+    nearest_beats: float = RESOLVED_BEATS
 
 
 def noise_of(fitted: Fitted) -> Noise:
@@ -50,8 +57,31 @@ def noise_of(fitted: Fitted) -> Noise:
 
 
 def choose_terms(fitted: Fitted, choices: Choices) -> Fitted:
-    """Add the terms that pay, drop those that do not, and return the fit with them."""
+    """Add the terms that pay, drop those that do not, and return the fit with them.
+
+    A phase that wanders (a clock that runs unevenly) looks like a swarm of modes close about the swing. Modes there
+    are believed only when they leave nothing of the kind behind.
+    """
+    found = _choose(fitted, choices)
+    if _nearest_beats(found) < SWARM_BEATS and noise_of(found).structured:
+        return _choose(fitted, replace(choices, nearest_beats=SWARM_BEATS))
+    return found
+
+
+def _nearest_beats(fitted: Fitted) -> float:
+    """Turns that the beat of the nearest other mode makes with the swing in the clip."""
+    values = fitted.model.values
+    apart = [
+        abs(values[mode_name(number, "omega")] - values["omega0"]) / (2 * np.pi) * fitted.model.length_s
+        for number in range(1, fitted.model.modes + 1)
+    ]
+    return min(apart, default=np.inf)
+
+
+def _choose(fitted: Fitted, choices: Choices) -> Fitted:
     for _ in range(MOST_TERMS):
+        if fitted.sigma < FINE_ENOUGH * fitted.model.values["amplitude"] * fitted.model.values["radius"]:
+            break
         better = _best_step(fitted, choices)
         if better is None:
             break
@@ -66,14 +96,14 @@ def _price(parameters: int, noise: Noise, extra: float = 0.0) -> float:
 def _best_step(fitted: Fitted, choices: Choices) -> Fitted | None:
     """The one more term with the most in hand, fitted; None where none pays."""
     noise = noise_of(fitted)
-    level = max(fitted.sigma, 0.0) ** 2 * noise.inflation
+    level = fitted.sigma**2 * noise.colour_inflation
     offers: list[tuple[float, tuple[str, ...] | ModeFound]] = []
     candidates = _candidates(fitted, choices)
     for names, fall in zip(candidates, projected_gains(fitted, candidates), strict=True):
         gain = fall / level
         offers.append((gain - _price(len(names), noise), names))
     if fitted.model.modes < choices.most_modes:
-        found = find_mode(fitted, resolved=True)
+        found = find_mode(fitted, beats=(choices.nearest_beats, np.inf))
         if found is not None:
             hand = found.gain / (fitted.sigma**2 * found.inflation)
             offers.append((hand - _price(4, noise, 2 * float(np.log(found.tried))), found))
@@ -106,8 +136,9 @@ def _candidates(fitted: Fitted, choices: Choices) -> list[tuple[str, ...]]:
         names += [(name,) for name in DAMPING_PARAMETERS.values() if name not in free]
         if "beta" not in free and "dry" not in free:
             names.append(("beta", "dry"))
-    if choices.view_shape and not fitted.model.sine:
-        names += [(name,) for name in ("bend2", "bend3") if name not in free]
+    if choices.view_shape:
+        shapes = ("turned", "bend3") if fitted.model.sine else ("bend2", "bend3")
+        names += [(name,) for name in shapes if name not in free]
     if "drift" not in free:
         names.append(("drift",))
     fastest = SLOWEST_SHARE * fitted.model.values["omega0"] / np.pi * fitted.model.length_s
@@ -157,6 +188,11 @@ def _possible(fitted: Fitted, what: tuple[str, ...] | ModeFound) -> bool:
         # A mode whose size is not determined only stands in for another term (the second harmonic for g₂).
         number = fitted.model.modes
         a, b = (values[mode_name(number, part)] for part in ("cos", "sin"))
+        beats = _nearest_beats(fitted)
+        if beats < 0.8 * RESOLVED_BEATS:
+            return False
+        if beats < CRAMPED_BEATS and np.hypot(a, b) > LARGEST_NEAR * values["amplitude"] * values["radius"]:
+            return False
         worst = max(u[free.index(mode_name(number, part))] for part in ("cos", "sin"))
         return bool(np.hypot(a, b) > 3 * worst)
     return all(values[name] > -2 * u[free.index(name)] for name in ("beta", "dry") if name in free)
@@ -173,7 +209,7 @@ def _drop_idle(fitted: Fitted, choices: Choices) -> Fitted:
             return fitted
         noise = noise_of(fitted)
         covariance = fitted.outcome.unscaled_covariance()
-        level = fitted.sigma**2 * noise.inflation
+        level = fitted.sigma**2 * noise.colour_inflation
         losses = {}
         for name in present:
             i = free.index(name)
@@ -196,8 +232,8 @@ def _drop_idle(fitted: Fitted, choices: Choices) -> Fitted:
     return fitted
 
 
-def first_model(model: SwingModel, damping: tuple[str, ...] | None) -> SwingModel:
-    """The plainest model: one law of damping (the first of those asked for), no skew, no other mode."""
+def first_model(model: SwingModel, damping: tuple[str, ...] | None, more: tuple[str, ...]) -> SwingModel:
+    """The plainest model: one law of damping (the first of those asked for), no skew, no other mode; `more` free beside."""
     kinds = ("viscous",) if damping is None else damping[:1]
     wanted = tuple(DAMPING_PARAMETERS[kind] for kind in kinds)
     values = {name: (model.values[name] if name in wanted else 0.0) for name in ("zeta", "beta", "dry")}
@@ -205,8 +241,7 @@ def first_model(model: SwingModel, damping: tuple[str, ...] | None) -> SwingMode
         # The start's loss rate goes to the first law asked for, at the start amplitude.
         a, zeta = model.values["amplitude"], model.values["zeta"]
         values[wanted[0]] = zeta * 3 * np.pi / (4 * a) if wanted[0] == "beta" else zeta * np.pi * a / 2
-    shape = ("shape",) if model.priors and "shape" in model.priors else ()
-    return model.with_free(("amplitude", "phase", "omega0", *wanted, "rest", *shape), **values)
+    return model.with_free(("amplitude", "phase", "omega0", *wanted, "rest", *more), **values)
 
 
 def all_damping(model: SwingModel, damping: tuple[str, ...] | None) -> SwingModel:
@@ -227,7 +262,7 @@ def unresolved_modes(fitted: Fitted, choices: Choices) -> list[Fitted]:
     level = fitted.sigma**2 * max(noise.colour_inflation, 1e-12)
     rivals = []
     for side in (-1, 1):
-        found = find_mode(fitted, resolved=False, side=side)
+        found = find_mode(fitted, beats=(SAME_BEATS, RESOLVED_BEATS), side=side)
         if found is None or found.gain / level < _price(4, noise, 2 * float(np.log(found.tried))):
             continue
         rival = fit_model(add_mode(fitted.model, found), fitted.samples, sigma=fitted.sigma, quick=True)
@@ -241,12 +276,7 @@ def cramped_fit(fitted: Fitted) -> Fitted | None:
 
     The beat of a near mode looks much like a change of the damping law, so its choice is part of the doubt.
     """
-    values = fitted.model.values
-    apart = [
-        abs(values[mode_name(number, "omega")] - values["omega0"]) / (2 * np.pi) * fitted.model.length_s
-        for number in range(1, fitted.model.modes + 1)
-    ]
-    if not apart or min(apart) >= CRAMPED_BEATS:
+    if _nearest_beats(fitted) >= CRAMPED_BEATS:
         return None
     missing = [name for name in DAMPING_PARAMETERS.values() if name not in fitted.model.free]
     wider = fitted.model.with_free((*fitted.model.free, *missing))

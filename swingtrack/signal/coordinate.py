@@ -3,6 +3,7 @@
 - looking along the swing axis ("above"; for a knife edge: along the edge) the dot runs on an arc, and the angle about
   the arc's centre is the swing angle, with no scale needed;
 - two dots on the article: the direction of the line between them;
+- at a slant the arc is part of an ellipse, and the angle that on the circle behind it;
 - from the side the dot runs to and fro as R sin q; R in pixels from dot radius and dot diameter, where both are known;
 - a series from elsewhere: taken as it is.
 
@@ -19,6 +20,7 @@ import numpy as np
 from swingtrack.errors import BadSeries, NothingToMeasure
 from swingtrack.records import Doubt, Floats, Path, Series, Track, View
 from swingtrack.signal.circle import Circle, fit_circle
+from swingtrack.signal.ellipse import Ellipse, fit_ellipse
 
 # The arc's rise over its own uncertainty from which a path counts as bent; well beyond chance, so that a straight
 # path with a little drift is not taken for the arc of a huge circle.
@@ -28,6 +30,8 @@ LEAST_ARC_RAD = 0.02
 # The camera's axis is taken to be within about 5° of the swing axis (common practice, no source): the arc's radius is
 # then out by 1.5 ε² at most.
 SKEW_RELATIVE_U = 0.01
+# The slanted view's own simplifications (camera level, far off, no bounce) are worth some 3 % (from drawn clips).
+SLANT_RELATIVE_U = 0.03
 # How well a dot's diameter in pixels gives the scale (blur, threshold): 3 % (judgment from drawn clips).
 DIAMETER_RELATIVE_U = 0.03
 FEWEST_SAMPLES = 20
@@ -44,7 +48,7 @@ class Coordinate:
     unit : str
         "rad" (the angle), "px" (a displacement as R sin q or of unknown scale) or "".
     camera : str
-        "above", "side", "two dots" or "series".
+        "above", "side", "oblique", "two dots" or "series".
     radius_px : float or None
         Pixels a radian; in the sine of a side view the R of R sin q.
     amplitude_relative_u : float
@@ -69,8 +73,10 @@ class Coordinate:
         return self.unit == "rad" or self.sine
 
 
-def find_coordinate(data: Path | Series, view: View | None) -> Coordinate:
+def find_coordinate(data: Path | Series, view: View | None, *, facing: bool = False) -> Coordinate:
     """The swing coordinate of a path or a series.
+
+    `facing`: the swing axis is level (a knife edge), so that a camera at the side looks along it.
 
     Raises
     ------
@@ -87,7 +93,7 @@ def find_coordinate(data: Path | Series, view: View | None) -> Coordinate:
         raise NothingToMeasure(
             "The path holds no dot.", "One dot's places are needed.", "Follow the clip again."
         )
-    return _from_one_dot(data, data.tracks[0], view)
+    return _from_one_dot(data, data.tracks[0], view, facing)
 
 
 def _from_series(series: Series) -> Coordinate:
@@ -139,7 +145,8 @@ def _from_two_dots(path: Path, view: View | None) -> Coordinate:
     u = np.sqrt((a.u_x_px**2 + a.u_y_px**2 + b.u_x_px**2 + b.u_y_px**2) / 2)
     t, (dx, dy), u = _clean(path.t_s, (b.x_px - a.x_px, b.y_px - a.y_px), u, a.seen & b.seen)
     if view is not None and view.camera == "side":
-        return _from_side(t, dx, u, path, view, 2.0)
+        radius = _known_radius(path, view)
+        return _from_side(t, dx, u, None if radius is None else (2 * radius[0], radius[1]))
     distance = np.hypot(dx, dy)
     far = float(np.median(distance))
     angle = np.unwrap(np.arctan2(-dy, dx))
@@ -154,25 +161,28 @@ def _from_two_dots(path: Path, view: View | None) -> Coordinate:
     )
 
 
-def _from_one_dot(path: Path, track: Track, view: View | None) -> Coordinate:
+def _from_one_dot(path: Path, track: Track, view: View | None, facing: bool) -> Coordinate:
     u = np.hypot(track.u_x_px, track.u_y_px) / np.sqrt(2)
     t, (x, y), u = _clean(path.t_s, (track.x_px, track.y_px), u, track.seen)
     camera = view.camera if view is not None else None
-    weight = float(np.median(u)) / u
-    weight = weight * _near(x, y)
+    weight = float(np.median(u)) / u * _near(x, y)
     circle = fit_circle(x, y, weight)
     bent = circle is not None and circle.sagitta_px > BENT * circle.sagitta_u_px
-    if camera in (None, "oblique"):
+    radius = _known_radius(path, view)
+    doubts: tuple[Doubt, ...] = ()
+    if camera == "side" and facing and bent:
+        camera = "above"  # a knife edge is seen along its axis from the side
+    if camera is None:
         camera = "above" if bent else "side"
-        said = Doubt(
-            "camera-not-said",
-            f"Nobody said where the camera stood; the dot's path is {'an arc' if bent else 'straight'}, so it is "
-            f"taken as seen from {'above, along the swing axis' if bent else 'the side'}.",
-            'Say it in the rig file: [view] from = "above" or "side".',
+        if bent and circle is not None and radius is not None and _disagree(circle, radius):
+            camera = "oblique"
+        doubts = (_unsaid(camera),)
+    if camera == "oblique" and bent:
+        seen = fit_ellipse(
+            x, y, weight, radius_px=radius and radius[0], radius_relative_u=radius[1] if radius else 0.1
         )
-        doubts: tuple[Doubt, ...] = (said,)
-    else:
-        doubts = ()
+        if seen is not None:
+            return _from_ellipse(t, (x, y), u, seen, doubts)
     if camera == "above" and circle is not None and bent:
         return _from_arc(t, (x, y), u, circle, doubts)
     if camera == "above":
@@ -183,8 +193,38 @@ def _from_one_dot(path: Path, track: Track, view: View | None) -> Coordinate:
                 "Let it swing farther, or paint the dot farther out.",
             ),
         )
-    along = _principal(x, y)
-    return _from_side(t, along, u, path, view, 1.0, doubts)
+        return Coordinate(t, _principal(x, y), u, "px", "above", doubts=doubts)
+    return _from_side(t, _principal(x, y), u, radius, doubts)
+
+
+def _unsaid(camera: str) -> Doubt:
+    seen = {
+        "above": "an arc, so it is taken as seen along the swing axis (from above)",
+        "side": "straight, so it is taken as seen from the side",
+        "oblique": "an arc flatter than the dot's radius makes, so it is taken as seen at a slant",
+    }[camera]
+    return Doubt(
+        "camera-not-said",
+        f"Nobody said where the camera stood; the dot's path is {seen}.",
+        'Say it in the rig file: [view] from = "above", "side" or "oblique".',
+    )
+
+
+def _disagree(circle: Circle, radius: tuple[float, float]) -> bool:
+    """Whether the arc's radius is clearly not the dot's own."""
+    away = abs(np.log(circle.radius_px / radius[0]))
+    return bool(away > max(0.15, 4 * np.hypot(circle.u_radius_px / circle.radius_px, radius[1])))
+
+
+def _known_radius(path: Path, view: View | None) -> tuple[float, float] | None:
+    """Dot radius in pixels, by the dot's own size in the picture, and its relative standard uncertainty."""
+    diameter_px = path.marker.diameter_px if path.marker is not None else None
+    if view is None or view.dot_radius_m is None or view.dot_diameter_m is None or not diameter_px:
+        return None
+    relative = np.sqrt(
+        view.dot_radius_m.relative_u**2 + view.dot_diameter_m.relative_u**2 + DIAMETER_RELATIVE_U**2
+    )
+    return view.dot_radius_m.value * diameter_px / view.dot_diameter_m.value, float(relative)
 
 
 def _near(x: Floats, y: Floats) -> Floats:
@@ -217,24 +257,33 @@ def _from_arc(
     )
 
 
-def _from_side(
-    t: Floats,
-    along: Floats,
-    u: Floats,
-    path: Path,
-    view: View | None,
-    arms: float,
-    doubts: tuple[Doubt, ...] = (),
+def _from_ellipse(
+    t: Floats, xy: tuple[Floats, Floats], u: Floats, ellipse: Ellipse, doubts: tuple[Doubt, ...]
 ) -> Coordinate:
-    """Displacement seen from the side; `arms` is 2 for the distance between two dots at either end."""
-    diameter_px = path.marker.diameter_px if path.marker is not None else None
-    if view is not None and view.dot_radius_m is not None and view.dot_diameter_m is not None and diameter_px:
-        scale = diameter_px / view.dot_diameter_m.value
-        radius = arms * view.dot_radius_m.value * scale
-        relative = float(
-            np.sqrt(
-                view.dot_radius_m.relative_u**2 + view.dot_diameter_m.relative_u**2 + DIAMETER_RELATIVE_U**2
-            )
+    x, y = xy
+    raw = ellipse.angle(x, y)
+    rest = float(np.angle(np.mean(np.exp(1j * raw))))
+    angle = np.angle(np.exp(1j * (raw - rest)))
+    relative = float(np.hypot(ellipse.relative_u(x, y), SLANT_RELATIVE_U))
+    # The pixel's worth of angle along the ellipse, which is shorter where the circle runs towards the camera.
+    stretch = ellipse.radius_px * np.hypot(np.cos(raw), ellipse.slant * np.sin(raw))
+    return Coordinate(
+        t, angle, u / stretch, "rad", "oblique", float(np.median(stretch)), relative, doubts=doubts
+    )
+
+
+def _from_side(
+    t: Floats, along: Floats, u: Floats, radius: tuple[float, float] | None, doubts: tuple[Doubt, ...] = ()
+) -> Coordinate:
+    """Displacement seen from the side; `radius` R in pixels and its relative uncertainty, where known."""
+    if radius is not None and np.ptp(along) < 1.98 * radius[0]:
+        return Coordinate(t, along, u, "px", "side", radius[0], radius[1], True, doubts)
+    if radius is not None:
+        doubts += (
+            Doubt(
+                "view-disagrees",
+                f"The dot runs over {np.ptp(along):.0f} px, more than a circle of {radius[0]:.0f} px allows.",
+                "Check dot_radius and dot_diameter, and that the camera looks from the side.",
+            ),
         )
-        return Coordinate(t, along, u, "px", "side", radius, relative, True, doubts)
     return Coordinate(t, along, u, "px", "side", doubts=doubts)

@@ -6,11 +6,12 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from swingtrack.records import Doubt, Mode, Quantity, SwingLaw
+from swingtrack.records import Doubt, Mode, Quantity
 from swingtrack.signal.choose import CRAMPED_BEATS
 from swingtrack.signal.coordinate import Coordinate
 from swingtrack.signal.fitting import Fitted
 from swingtrack.signal.noise import Noise
+from swingtrack.signal.opening import Opening
 from swingtrack.signal.quantities import Estimate, InClip
 
 # Judgments, common practice unless a reason is given.
@@ -20,26 +21,41 @@ LOW_SIGNAL = 5.0  # amplitude at the end over the noise of one sample
 LEAST_SAMPLES_A_PERIOD = 6.0
 HEAVY_DAMPING = 0.05  # damping ratio from which the word "period" begins to lose its meaning
 LARGE_AMPLITUDE_RAD = 0.6  # beyond some 35° the law's own geometry has to be right to a part in a thousand
+COLOURED = (
+    30.0  # noise at the swing's frequency over its mean from which it is more of a motion than of a noise
+)
 LEFT_OUT_SHARE = 0.02
 UNDETERMINED_SHARE = 0.5  # of the prior's u that the clip has to take away before it counts as determined
 
 
 @dataclass(frozen=True, eq=False)
 class Findings:
-    """All that the checks look at."""
+    """All that the checks look at; `spread_s` is the doubt from motions not resolved, s."""
 
-    fitted: Fitted
     found: Estimate
     noise: Noise
     coordinate: Coordinate
-    law: SwingLaw | None
-    used_law: SwingLaw | None
-    span: tuple[float, float]
+    opening: Opening
     in_clip: InClip
     modes: tuple[Mode, ...]
     period: Quantity
-    length_s: float
-    spread_s: float = 0.0
+    spread_s: float
+    amplitude_known: bool
+
+    @property
+    def fitted(self) -> Fitted:
+        """The final fit."""
+        return self.found.fitted
+
+    @property
+    def span(self) -> tuple[float, float]:
+        """The part fitted, s."""
+        return self.opening.span
+
+    @property
+    def length_s(self) -> float:
+        """Its length."""
+        return self.fitted.model.length_s
 
 
 def find_doubts(f: Findings) -> tuple[Doubt, ...]:
@@ -73,15 +89,13 @@ def _cycles(f: Findings) -> tuple[Doubt, ...]:
 
 
 def _amplitude(f: Findings) -> tuple[Doubt, ...]:
-    if f.used_law is not None:
-        return ()
-    prior = (f.fitted.model.priors or {}).get("shape")
-    if prior is None or prior.u < 1e-9:
-        return ()
-    determined = f.found.spread({"shape": 1.0}) < UNDETERMINED_SHARE * prior.u
     percent = 100 * f.period.relative_u
+    knowledge = f.opening.knowledge
+    if knowledge.law is not None and (f.coordinate.amplitude_known or not knowledge.amplitude_open):
+        return ()
     if f.coordinate.amplitude_known:
-        if determined:
+        prior = knowledge.priors.get("shape")
+        if prior is None or f.found.spread({"shape": 1.0}) < UNDETERMINED_SHARE * prior.u:
             return ()
         return (
             Doubt(
@@ -91,15 +105,15 @@ def _amplitude(f: Findings) -> tuple[Doubt, ...]:
                 "Give the rig file, or let the swing die down further while filming.",
             ),
         )
-    seen = (
-        "the change of the period along the clip was used instead"
-        if determined
-        else "it is in the uncertainty"
+    told = f.amplitude_known or (
+        "shape" in knowledge.priors
+        and f.found.spread({"shape": 1.0}) < UNDETERMINED_SHARE * knowledge.priors["shape"].u
     )
+    seen = "the change of the period along the clip was used instead" if told else "it is in the uncertainty"
     return (
         Doubt(
             "amplitude-unknown",
-            f"The swing's angle is not known, so how far the amplitude lengthens the period is not either; {seen} "
+            f"The swing's angle is not seen, so how far the amplitude lengthens the period is not either; {seen} "
             f"({percent:.2g} %).",
             "Film from above, or give dot_radius and dot_diameter in [view]; keep the swing below 5°.",
         ),
@@ -132,7 +146,7 @@ def _modes_too_near(f: Findings) -> tuple[Doubt, ...]:
 
 
 def _residual(f: Findings) -> tuple[Doubt, ...]:
-    if not f.noise.structured:
+    if not f.noise.structured and f.noise.inflation < COLOURED:
         return ()
     return (
         Doubt(
@@ -145,10 +159,11 @@ def _residual(f: Findings) -> tuple[Doubt, ...]:
 
 
 def _large(f: Findings) -> tuple[Doubt, ...]:
-    if not f.coordinate.amplitude_known or f.fitted.model.values["amplitude"] < LARGE_AMPLITUDE_RAD:
+    if not f.amplitude_known or f.fitted.model.values["amplitude"] < LARGE_AMPLITUDE_RAD:
         return ()
     degrees = np.degrees(f.fitted.model.values["amplitude"])
-    beyond = f.used_law is not None and f.fitted.model.values["amplitude"] > f.used_law.q_max_rad
+    law = f.opening.knowledge.law
+    beyond = law is not None and f.fitted.model.values["amplitude"] > law.q_max_rad
     more = " That is beyond what the rig's law was made for." if beyond else ""
     return (
         Doubt(
@@ -190,7 +205,7 @@ def _outliers(f: Findings) -> tuple[Doubt, ...]:
 
 
 def _signal(f: Findings) -> tuple[Doubt, ...]:
-    scale = f.fitted.model.values["radius"] if f.fitted.model.sine else 1.0
+    scale = f.fitted.model.values["radius"]
     ratio = scale * f.fitted.model.values["amplitude"] / f.fitted.sigma
     if ratio >= LOW_SIGNAL:
         return ()

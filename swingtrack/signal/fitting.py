@@ -14,6 +14,8 @@ from swingtrack.signal.solver import LeastSquares, minimise
 ROUNDS = 6
 # Noise is never taken for less than this share of the amplitude: rounding of the model itself.
 NOISE_FLOOR = 1e-11
+# Nothing within this share of the amplitude is a bad frame, however well the rest may fit.
+OUTLIER_FLOOR = 1e-6
 SPARE_SAMPLES = 8  # samples beyond the number of parameters, or nothing is left to tell the noise by
 MAD_TO_SIGMA = 1.4826  # normal distribution
 
@@ -94,7 +96,7 @@ def fit_model(
     if not kept.all():
         left[~kept] = (samples.y[~kept] - _at(best, samples.t, ~kept)) * samples.weight[~kept]
     spare = max(len(y) - len(model.free), 1)
-    floor = NOISE_FLOOR * abs(best.values["amplitude"])
+    floor = NOISE_FLOOR * abs(best.values["amplitude"] * best.values["radius"])
     spread = float(np.sqrt(np.sum(left[kept] ** 2) / spare))
     return Fitted(best, samples, outcome, left, max(spread, floor), len(priors))
 
@@ -103,17 +105,25 @@ def _at(model: SwingModel, t: Floats, which: Bools) -> Floats:
     return np.asarray(model.seen(t)[which])
 
 
-def fit_robustly(model: SwingModel, samples: Samples, limit: float, *, sigma: float = 0.0) -> Fitted | None:
-    """Fit, set aside what lies beyond `limit` robust standard deviations, and fit again until the set stands."""
+def fit_robustly(
+    model: SwingModel, samples: Samples, limit: float, *, sigma: float = 0.0, final: bool = False
+) -> Fitted | None:
+    """Fit, set aside what lies beyond `limit` robust standard deviations, and fit again until the set stands.
+
+    `final` goes to the last digit in the end.
+    """
     fitted = fit_model(model, samples, sigma=sigma, quick=True)
     for _ in range(ROUNDS):
         if fitted is None:
             return None
-        kept = _inside(fitted.residuals, limit, NOISE_FLOOR * fitted.model.values["amplitude"])
+        size = fitted.model.values["amplitude"] * abs(fitted.model.values["radius"])
+        kept = _inside(fitted.residuals, limit, OUTLIER_FLOOR * size)
         if np.array_equal(kept, fitted.samples.kept):
             break
         sample_set = replace(fitted.samples, kept=kept)
-        fitted = fit_model(fitted.model, sample_set, sigma=fitted.sigma, quick=True)
+        fitted = fit_model(fitted.model, sample_set, sigma=sigma, quick=True)
+    if final and fitted is not None:
+        return fit_model(fitted.model, fitted.samples, sigma=sigma)
     return fitted
 
 

@@ -72,11 +72,11 @@ def _basis(terms: int) -> tuple[Floats, Floats, Floats, Floats, Floats]:
     eye = np.eye(terms)
     first = chebyshev.chebder(eye, axis=0)
     second = chebyshev.chebder(first, axis=0)
-    t0 = chebyshev.chebvander(inner, terms - 1)
-    t1 = chebyshev.chebvander(inner, terms - 2) @ first
-    t2 = chebyshev.chebvander(inner, terms - 3) @ second
+    t0 = np.asarray(chebyshev.chebvander(inner, terms - 1), dtype=float)
+    t1 = np.asarray(chebyshev.chebvander(inner, terms - 2) @ first, dtype=float)
+    t2 = np.asarray(chebyshev.chebvander(inner, terms - 3) @ second, dtype=float)
     ends = chebyshev.chebvander(np.array([-1.0, 1.0]), terms - 1)
-    end_slopes = chebyshev.chebvander(np.array([-1.0, 1.0]), terms - 2) @ first
+    end_slopes = np.asarray(chebyshev.chebvander(np.array([-1.0, 1.0]), terms - 2) @ first, dtype=float)
     return t0, t1, t2, ends, end_slopes
 
 
@@ -133,11 +133,13 @@ def solve_half_swings(amplitude: Floats, damping: Damping, restoring: Restoring)
     pushes[:, : terms - 2, 2] = r**2 * q1**2
     pushes[:, : terms - 2, 3] = 1.0
     pushes[:, : terms - 2, 4] = -pull.v1_shape
-    slopes = np.linalg.solve(matrix, pushes)
+    slopes = np.asarray(np.linalg.solve(matrix, pushes), dtype=float)
     return HalfSwings(x[:, :terms], x[:, terms], slopes[:, :terms], slopes[:, terms], solved)
 
 
 @lru_cache(maxsize=4)
 def _cosine_start(terms: int) -> Floats:
     """Chebyshev coefficients of cos(π (s + 1) / 2), the half-swing of a harmonic oscillator."""
-    return np.asarray(chebyshev.chebinterpolate(lambda s: np.cos(np.pi * (s + 1) / 2), terms - 1))
+    nodes = chebyshev.chebpts1(terms)
+    values = np.cos(np.pi * (nodes + 1) / 2)
+    return np.asarray(np.linalg.solve(chebyshev.chebvander(nodes, terms - 1), values), dtype=float)

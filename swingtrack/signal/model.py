@@ -1,7 +1,7 @@
 """What the clip is taken to show: the exact swing seen through the camera, other modes beside it.
 
-    y(t) = B + D τ + q(t) + g₂ q² + g₃ q³ + Σ e^(−δ τ) (a cos ω τ + b sin ω τ)        angle seen, or unit unknown
-    y(t) = B + D τ + R sin(q + q₀) + Σ …                                             seen from the side
+    y(t) = B + D τ + R (q(t) + g₂ q² + g₃ q³) + Σ e^(−δ τ) (a cos ω τ + b sin ω τ)        angle seen (R = 1)
+    y(t) = B + D τ + R (sin(q + q₀) + g₃ q³) + Σ …                                   seen from the side
 
 with τ the time from the first sample and q the exact motion (`exact`). g₂, g₃ take up what a camera askew does to
 the waveform; the rest place may wander slowly, Σ wⱼ cos(π j τ/τ_end). Both are only let free where the clip shows
@@ -116,8 +116,8 @@ class SwingModel:
     def _view(self, q: Floats) -> Floats:
         v = self.values
         if self.sine:
-            return np.asarray(v["radius"] * np.sin(q + v["turned"]))
-        return np.asarray(q + v["bend2"] * q**2 + v["bend3"] * q**3)
+            return np.asarray(v["radius"] * (np.sin(q + v["turned"]) + v["bend3"] * q**3))
+        return np.asarray(v["radius"] * (q + v["bend2"] * q**2 + v["bend3"] * q**3))
 
     def _mode(self, number: int, t: Floats) -> tuple[Floats, dict[str, Floats]]:
         a, b, omega, decay = (self.values[mode_name(number, part)] for part in MODE)
@@ -138,11 +138,13 @@ class SwingModel:
         columns: dict[str, Floats] = {"rest": np.ones_like(t), "drift": t}
         if self.sine:
             s, c = np.sin(q + v["turned"]), np.cos(q + v["turned"])
-            on_q = v["radius"] * c
-            columns["radius"], columns["turned"] = s, on_q
+            on_q = v["radius"] * (c + 3 * v["bend3"] * q**2)
+            columns["radius"], columns["turned"] = s + v["bend3"] * q**3, v["radius"] * c
+            columns["bend3"] = v["radius"] * q**3
         else:
-            on_q = 1 + 2 * v["bend2"] * q + 3 * v["bend3"] * q**2
-            columns["bend2"], columns["bend3"] = q**2, q**3
+            on_q = v["radius"] * (1 + 2 * v["bend2"] * q + 3 * v["bend3"] * q**2)
+            columns["radius"] = q + v["bend2"] * q**2 + v["bend3"] * q**3
+            columns["bend2"], columns["bend3"] = v["radius"] * q**2, v["radius"] * q**3
         slopes = motion.slopes * on_q[:, None]
         columns.update({name: slopes[:, i] for i, name in enumerate(SWING)})
         y = self._view(q) + v["rest"] + v["drift"] * t
@@ -160,6 +162,7 @@ class SwingModel:
 def blank_values(modes: int = 0) -> dict[str, float]:
     """Every parameter's name with the value that makes it vanish."""
     values = dict.fromkeys((*SWING, *VIEW, *SLOW), 0.0)
+    values["radius"] = 1.0
     for number in range(1, modes + 1):
         values.update({mode_name(number, part): 0.0 for part in MODE})
     return values

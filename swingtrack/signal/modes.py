@@ -20,8 +20,9 @@ from swingtrack.signal.spectrum import amplitude_spectrum, background
 LOWEST_SHARE, HIGHEST_SHARE = 0.2, 5.0
 FINE_STEP, FINE_REACH = 0.25, 6.0
 COARSE_CANDIDATES = 6
-# A clip resolves two motions when their beat makes this much of a turn in it.
+# A clip resolves two motions when their beat makes a whole turn in it; less than a tenth of one is the same motion.
 RESOLVED_BEATS = 1.0
+SAME_BEATS = 0.1
 
 
 @dataclass(frozen=True)
@@ -37,10 +38,10 @@ class ModeFound:
     tried: int
 
 
-def find_mode(fitted: Fitted, *, resolved: bool, side: int = 0) -> ModeFound | None:
+def find_mode(fitted: Fitted, *, beats: tuple[float, float], side: int = 0) -> ModeFound | None:
     """The frequency whose sinusoid would lower the misfit most; None where the record is too short for any.
 
-    `resolved`: look only where the clip can tell it from the swing, or only where it can't. `side` +1 or −1: only
+    `beats`: look only where the beat with the swing makes between so many turns in the clip. `side` +1 or −1: only
     above or below the swing's frequency.
     """
     kept = fitted.samples.kept
@@ -58,8 +59,8 @@ def find_mode(fitted: Fitted, *, resolved: bool, side: int = 0) -> ModeFound | N
     tops = tops[np.argsort(-height[tops])][:COARSE_CANDIDATES]
     near = hz + np.arange(-FINE_REACH, FINE_REACH + FINE_STEP / 2, FINE_STEP) / length
     grid = np.concatenate([near[near > 0], spectrum.hz[shown][tops]])
-    beats = np.abs(grid - hz) * length
-    grid = grid[(beats >= RESOLVED_BEATS) if resolved else (beats > 0.1) & (beats < RESOLVED_BEATS)]
+    turns = np.abs(grid - hz) * length
+    grid = grid[(turns >= beats[0]) & (turns < beats[1])]
     if side:
         grid = grid[(grid - hz) * side > 0]
     if len(grid) == 0:

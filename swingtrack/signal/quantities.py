@@ -45,15 +45,14 @@ class Estimate:
 
 
 def estimate(fitted: Fitted, noise: Noise) -> Estimate:
-    """Covariance of the parameters for noise of the colour measured."""
+    """Covariance of the parameters for noise of the colour measured.
+
+    The fit's rows of prior knowledge have to be weighed against that same noise (`fit_model`'s `sigma`).
+    """
     jacobian = fitted.outcome.jacobian
-    rows = len(jacobian) - fitted.prior_rows
-    # Rows of prior knowledge were weighed against white noise; against coloured noise they weigh more.
-    scaled = jacobian.copy()
-    scaled[rows:] *= np.sqrt(noise.inflation)
-    lengths = np.linalg.norm(scaled, axis=0)
+    lengths = np.linalg.norm(jacobian, axis=0)
     lengths[lengths == 0] = 1.0
-    normal = (scaled / lengths).T @ (scaled / lengths)
+    normal = (jacobian / lengths).T @ (jacobian / lengths)
     inverse = np.linalg.pinv(normal, rcond=1e-15, hermitian=True) / np.outer(lengths, lengths)
     # The fit takes S(f), not the mean density, out of the residuals for every parameter it has at the swing.
     free = len(fitted.model.free)
@@ -67,6 +66,12 @@ def period(found: Estimate) -> Quantity:
     """T = 2π/ω0, s."""
     omega0 = found.value("omega0")
     return found.quantity(2 * np.pi / omega0, {"omega0": -2 * np.pi / omega0**2}, "s")
+
+
+def coordinate_amplitude(found: Estimate) -> Quantity:
+    """First amplitude in the coordinate's own unit, R A: what the clip shows, whatever angle that may be."""
+    a, r = found.value("amplitude"), found.value("radius")
+    return found.quantity(a * r, {"amplitude": r, "radius": a}, "1")
 
 
 def losses(found: Estimate) -> Losses:

@@ -7,10 +7,11 @@ m, m', m'', v', v'' at given angles, and with ∂v'/∂Λ where the law has a fr
 from __future__ import annotations
 
 from dataclasses import dataclass
-from typing import Protocol
+from typing import Any, Protocol
 
 import numpy as np
 from numpy.polynomial import chebyshev
+from numpy.typing import NDArray
 
 from swingtrack.records import Floats, SwingLaw
 
@@ -105,12 +106,12 @@ class FromLaw:
 
 def _with_slopes(series: Floats) -> tuple[Floats, Floats, Floats]:
     whole = np.asarray(series, dtype=float)
-    first = chebyshev.chebder(whole) if len(whole) > 1 else np.zeros(1)
-    second = chebyshev.chebder(first) if len(first) > 1 else np.zeros(1)
+    first = np.asarray(chebyshev.chebder(whole) if len(whole) > 1 else [0.0], dtype=float)
+    second = np.asarray(chebyshev.chebder(first) if len(first) > 1 else [0.0], dtype=float)
     return whole, first, second
 
 
-def _add(a: Floats, b: Floats) -> Floats:
+def _add(a: NDArray[Any], b: NDArray[Any]) -> Floats:
     return np.asarray(chebyshev.chebadd(a, b))
 
 

@@ -63,12 +63,12 @@ class LeastSquares:
         _, s, vt = np.linalg.svd(self.jacobian / scale, full_matrices=False)
         inverse = np.where(s > s[0] / WORST_CONDITION, 1 / np.maximum(s, 1e-300), 0.0)
         root = vt.T * inverse
-        return np.asarray(root @ root.T) / np.outer(scale, scale)
+        return np.asarray(root @ root.T / np.outer(scale, scale), dtype=float)
 
     def covariance(self) -> Floats:
         """Covariance for independent residuals of one variance, S/(n − p) · (JᵀJ)⁻¹."""
         n, p = self.jacobian.shape
-        return self.unscaled_covariance() * (self.sum_of_squares / max(n - p, 1))
+        return np.asarray(self.unscaled_covariance() * (self.sum_of_squares / max(n - p, 1)), dtype=float)
 
 
 def minimise(

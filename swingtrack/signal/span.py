@@ -102,9 +102,7 @@ def _next_span(t: Floats, y: Floats, span: tuple[float, float], fitted: Fitted) 
     typical = np.array([MAD_TO_SIGMA * np.median(group) for group in groups])
     core = (at >= span[0]) & (at <= span[1])
     usual = MAD_TO_SIGMA * float(np.median(left[core]))
-    amplitude = fitted.model.values["amplitude"] * (
-        fitted.model.values["radius"] if fitted.model.sine else 1.0
-    )
+    amplitude = fitted.model.values["amplitude"] * fitted.model.values["radius"]
     outside = (numbers * width + span[0] < span[0] - width / 2) | (numbers * width + span[0] >= span[1])
     local = amplitude * np.ones(len(numbers))
     tail = numbers * width > length

@@ -56,10 +56,10 @@ def amplitude_spectrum(t: Floats, y: Floats, *, padding: int = PADDING, tapered:
         weight = 1 - np.cos(2 * np.pi * (t - t[0]) / float(t[-1] - t[0]))
     grid = np.bincount(place, weights=z * weight, minlength=size)
     length = _quick_length(size * padding)
-    power = np.abs(np.fft.rfft(grid, length)) * 2 / float(weight.sum())
+    power = np.asarray(np.abs(np.fft.rfft(grid, length)) * 2 / float(weight.sum()), dtype=float)
     hz = np.fft.rfftfreq(length, step)
     shown = hz <= 0.25 / step
-    return Spectrum(hz[shown], power[shown], 1 / float(t[-1] - t[0] + 2 * step))
+    return Spectrum(np.asarray(hz[shown], dtype=float), power[shown], 1 / float(t[-1] - t[0] + 2 * step))
 
 
 def _quick_length(n: int) -> int:

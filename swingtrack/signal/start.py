@@ -16,7 +16,10 @@ from swingtrack.signal.windows import Windows
 
 @dataclass(frozen=True)
 class StartValues:
-    """Values of the swing's parameters at t = `t0_s`; `side` is that of the turning point before it."""
+    """Values of the swing's parameters at t = `t0_s`; `side` is that of the turning point before it.
+
+    `misfit` is the rms of what the local phases leave, weighted by amplitude, rad.
+    """
 
     t0_s: float
     amplitude: float
@@ -25,6 +28,7 @@ class StartValues:
     zeta: float
     rest: float
     side: int
+    misfit: float = 0.0
 
 
 def period_ratio(amplitude: Floats, law: SwingLaw | None, shape: float) -> Floats:
@@ -45,6 +49,7 @@ def start_values(windows: Windows, t0: float, law: SwingLaw | None, shape: float
     slow = np.concatenate([[0.0], np.cumsum(np.diff(t) * (1 / ratio[1:] + 1 / ratio[:-1]) / 2)])
     weight = amplitude / amplitude.max()
     omega0, phase = np.polyfit(slow, windows.phase[known], 1, w=weight)
+    left = (windows.phase[known] - phase - omega0 * slow) * weight
     decline, level = np.polyfit(t - t[0], np.log(amplitude), 1, w=weight)
     gamma = float(np.clip(-decline, -0.05 * omega0, 0.5 * omega0))
     at_start = float(np.exp(level + gamma * (t[0] - t0)))
@@ -60,4 +65,5 @@ def start_values(windows: Windows, t0: float, law: SwingLaw | None, shape: float
         gamma / float(omega0),
         float(np.average(windows.rest[known], weights=weight)),
         1 if halves % 2 == 0 else -1,
+        float(np.sqrt(np.mean(left**2))),
     )

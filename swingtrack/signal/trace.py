@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from swingtrack.records import Floats, SwingTrace
+from swingtrack.records import Bools, Floats, SwingTrace
+from swingtrack.signal.coordinate import Coordinate
 from swingtrack.signal.fitting import Fitted
 from swingtrack.signal.spectrum import amplitude_spectrum
 
@@ -29,7 +30,7 @@ def cycle_periods(fitted: Fitted) -> tuple[Floats, Floats]:
     motion = fitted.model.motion(t)
     turning = (motion.turning_x - values["phase"]) / values["omega0"]
     residual = fitted.kept_residuals / fitted.samples.weight[kept]
-    speed = motion.velocity * (values["radius"] if fitted.model.sine else 1.0)
+    speed = motion.velocity * (values["radius"])
     half = np.clip(np.searchsorted(turning, t, side="right") - 1, 0, len(turning) - 2)
     size = len(turning) - 1
     power = np.bincount(half, weights=speed**2, minlength=size)
@@ -46,16 +47,15 @@ def cycle_periods(fitted: Fitted) -> tuple[Floats, Floats]:
     return middle[there], length[there]
 
 
-def make_trace(
-    t: Floats, y: Floats, used: np.ndarray, fitted: Fitted, span: tuple[float, float], unit: str
-) -> SwingTrace:
+def make_trace(coordinate: Coordinate, used: Bools, fitted: Fitted, span: tuple[float, float]) -> SwingTrace:
     """The whole record with the fit on its free part; `span` its start and end, s, times as in the input."""
+    t, y, unit = coordinate.t, coordinate.y, coordinate.unit
     inside = (t >= span[0]) & (t <= span[1])
     seen = np.full(len(t), np.nan)
     amplitude = np.full(len(t), np.nan)
     local = t[inside] - span[0]
     seen[inside] = fitted.model.seen(local)
-    scale = fitted.model.values["radius"] if fitted.model.sine else 1.0
+    scale = fitted.model.values["radius"]
     amplitude[inside] = scale * envelope_at(fitted, local)
     kept = fitted.samples.kept
     spectrum = amplitude_spectrum(

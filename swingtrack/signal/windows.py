@@ -85,7 +85,9 @@ def _fit(t: Floats, y: Floats, hz: float, periods: float) -> Windows:
     shift = np.full(len(middles), np.nan)
     shift[known] = np.unwrap(local[known])
     phase = 2 * np.pi * hz * (middles - t[0]) + shift
-    return Windows(middles, amplitude, found[:, 0] + level + nan, misfit + nan, phase)
+    return Windows(
+        middles, amplitude, np.asarray(found[:, 0] + level + nan, dtype=float), misfit + nan, phase
+    )
 
 
 def _window_sums(columns: Floats, first: np.ndarray, last: np.ndarray) -> Floats:
