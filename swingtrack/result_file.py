@@ -140,6 +140,19 @@ def stopwatch_entry(stopwatch: Stopwatch) -> dict[str, Any]:
     }
 
 
+def combined_document(result: Any, files: list[str], *, name: str = "combined") -> dict[str, Any]:
+    """The document of what `combine` or `solids` made, under `name`; its warnings stand at the top like all others."""
+    part = _plain(result)
+    warnings = part.pop("doubts", [])
+    return {
+        "schema": SCHEMA,
+        "program": {"name": "swingtrack", "version": program_version()},
+        name: part,
+        "warnings": warnings,
+        "inputs": {"files": files},
+    }
+
+
 def dump(document: Mapping[str, Any], *, indent: int | None = 2) -> str:
     """JSON text of a document: UTF-8 signs kept, no NaN."""
     return json.dumps(document, ensure_ascii=False, allow_nan=False, indent=indent)

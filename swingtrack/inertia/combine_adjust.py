@@ -63,7 +63,17 @@ class Adjusted:
     dof: int
 
 
-def adjust(conditions: Conditions, inputs: Mapping[str, Quantity], start: Sequence[float]) -> Adjusted:
+class Unsettled(BadInput):
+    """The measured values contradict one another so far that the adjustment runs away."""
+
+
+def adjust(
+    conditions: Conditions,
+    inputs: Mapping[str, Quantity],
+    start: Sequence[float],
+    *,
+    at_measured: bool = False,
+) -> Adjusted:
     """Adjust inputs and unknowns so that Σ ((x − x₀)/u)² is least while F(p, x) = 0.
 
     Linearised and repeated at the adjusted values: with A = ∂F/∂p, B = ∂F/∂x, Σ = diag(u²), V = B Σ Bᵀ and
@@ -76,11 +86,13 @@ def adjust(conditions: Conditions, inputs: Mapping[str, Quantity], start: Sequen
     inputs : mapping of name to Quantity
         Independent of one another.
     start : (q,) float
+    at_measured : bool
+        Weigh and linearise at the measured inputs and the start throughout: for runs that contradict one another far beyond their claims.
 
     Raises
     ------
     BadInput
-        The conditions leave an unknown open, or the steps do not settle.
+        The conditions leave an unknown open; `Unsettled` where the steps do not settle.
 
     Notes
     -----
@@ -92,13 +104,15 @@ def adjust(conditions: Conditions, inputs: Mapping[str, Quantity], start: Sequen
     measured = np.array([inputs[name].value for name in names])
     variance = np.array([inputs[name].u ** 2 for name in names])
     x, p = measured.copy(), np.asarray(start, dtype=np.float64)
+    first_b: Floats | None = None
     for _ in range(MAX_STEPS):
         f, a, b = _linearise(conditions, names, p, x)
         if len(f) < len(p) or not np.all(np.isfinite(a)) or not np.all(np.isfinite(b)):
             raise _undetermined()
+        first_b = b if first_b is None or not at_measured else first_b
         w = f + b @ (measured - x)
         floor = ROUNDING * (np.abs(a) @ np.abs(p) + np.abs(b) @ np.abs(x))
-        v = (b * variance) @ b.T + np.diag(np.maximum(floor, np.finfo(float).tiny ** 0.25) ** 2)
+        v = (first_b * variance) @ first_b.T + np.diag(np.maximum(floor, np.finfo(float).tiny ** 0.25) ** 2)
         scale = np.sqrt(np.diag(v))
         whitened = np.linalg.cholesky(v / np.outer(scale, scale))
         rows = np.linalg.solve(whitened, a / scale[:, None])
@@ -112,10 +126,10 @@ def adjust(conditions: Conditions, inputs: Mapping[str, Quantity], start: Sequen
         pull = np.linalg.solve(whitened.T, left) / scale
         moved = measured - variance * (b.T @ pull)
         spread = np.sqrt(np.sum(inverse**2, axis=1))
-        settled = np.all(np.abs(step) <= 1e-7 * spread + 1e-13 * np.abs(p)) and np.all(
-            np.abs(moved - x) <= 1e-6 * np.sqrt(variance) + 1e-13 * np.abs(x)
+        settled = np.all(np.abs(step) <= 1e-7 * spread + 1e-13 * np.abs(p)) and (
+            at_measured or np.all(np.abs(moved - x) <= 1e-6 * np.sqrt(variance) + 1e-13 * np.abs(x))
         )
-        p, x = p + step, moved
+        p, x = p + step, x if at_measured else moved
         if settled:
             projector = inverse @ np.linalg.inv(whitened) / scale
             unwhiten = scale[:, None] * whitened
@@ -132,7 +146,7 @@ def adjust(conditions: Conditions, inputs: Mapping[str, Quantity], start: Sequen
                 chi2=float(left @ left),
                 dof=len(f) - len(p),
             )
-    raise BadInput(
+    raise Unsettled(
         "The runs contradict one another so far that no answer settles.",
         "Needed: runs of one article whose periods and dimensions go together.",
         "Check the units and which run is which.",

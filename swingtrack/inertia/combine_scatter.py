@@ -10,12 +10,13 @@ import numpy as np
 
 from ..records import Doubt, Floats, Quantity
 from .combine import Consistency, RunLine
-from .combine_adjust import COMPLEX_STEP, SCATTER, Adjusted, Conditions, adjust
+from .combine_adjust import COMPLEX_STEP, SCATTER, Adjusted, Conditions, Unsettled, adjust
 from .combine_inputs import JointInputs
 
 SIGNIFICANT = 0.05  # chance below which honest runs are not believed to scatter so much: the usual 5 %
 TOO_QUIET = 0.01  # chance of so little scatter below which the claims look too large
 FEW_FOR_QUIET = 4  # degrees of freedom below which quiet runs say nothing
+GROSS = 10.0  # Birge ratio from which the claims are of no use: our judgment
 LARGEST_SCATTER = 10.0  # relative; beyond it the runs are not of one article
 
 
@@ -46,7 +47,13 @@ def settle(joint: JointInputs, conditions: Conditions, start: Sequence[float]) -
     from scipy.optimize import brentq
     from scipy.special import chdtr, chdtrc
 
-    adjusted = adjust(conditions, joint.quantities, start)
+    try:
+        adjusted = adjust(conditions, joint.quantities, start)
+        gross = adjusted.dof > 0 and adjusted.chi2 > GROSS**2 * adjusted.dof
+    except Unsettled:
+        gross = True
+    if gross:  # moving inputs by many of their u to please the runs would go astray: all linear, and said below
+        adjusted = adjust(conditions, joint.quantities, start, at_measured=True)
     chi2, dof = adjusted.chi2, adjusted.dof
     scatter, claimed = pooled_scatter(joint)
     if dof == 0:
@@ -63,7 +70,7 @@ def settle(joint: JointInputs, conditions: Conditions, start: Sequence[float]) -
 
     def with_scatter(tau: float) -> Adjusted:
         more = {SCATTER + run.name: Quantity(0.0, tau, "1", dof=float(dof)) for run in joint.runs}
-        return adjust(conditions, {**joint.quantities, **more}, adjusted.values.tolist())
+        return adjust(conditions, {**joint.quantities, **more}, start, at_measured=gross)
 
     low, high = 0.0, max(_own_scale(joint), 1e-9)
     while with_scatter(high).chi2 > dof and high < LARGEST_SCATTER:

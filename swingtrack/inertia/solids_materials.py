@@ -83,4 +83,6 @@ def source_of(material: str) -> str | None:
 
 def plain_name(material: str) -> str:
     """A material's name without the differences of spelling that do not matter."""
-    return " ".join(material.lower().replace("aluminum", "aluminium").replace("carbon fiber", "carbon fibre").split())
+    return " ".join(
+        material.lower().replace("aluminum", "aluminium").replace("carbon fiber", "carbon fibre").split()
+    )

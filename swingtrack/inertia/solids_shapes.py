@@ -172,7 +172,9 @@ SHAPES: dict[str, Shape] = {
         ("outer_diameter", "inner_diameter", "height"), tube, smaller=(("inner_diameter", "outer_diameter"),)
     ),
     "sphere": Shape(("diameter",), sphere),
-    "shell": Shape(("outer_diameter", "inner_diameter"), shell, smaller=(("inner_diameter", "outer_diameter"),)),
+    "shell": Shape(
+        ("outer_diameter", "inner_diameter"), shell, smaller=(("inner_diameter", "outer_diameter"),)
+    ),
     "thin-shell": Shape(("diameter",), thin_shell, thin=True),
     "rod": Shape(("length",), rod, thin=True),
     "cone": Shape(("diameter", "height"), cone),

@@ -33,12 +33,12 @@ def inertia_text(measurement: Measurement) -> str:
     """What `inertia` prints: the moment, its budget, corrections, advice."""
     inertia = measurement.inertia
     assert inertia is not None
-    lines = [_table(_inertia_rows(inertia)), "", _budget_table(inertia), "", "corrections"]
+    lines = [table(_inertia_rows(inertia)), "", _budget_table(inertia), "", "corrections"]
     for item in inertia.corrections:
         state = "applied" if item.applied else "not applied"
         lines.append(f"  {item.name:<14}{100 * item.relative:+9.4f} %  {state:<12} {item.reason}")
     lines += [f"advice: {line}" for line in inertia.advice]
-    return "\n".join(lines) + "\n" + _doubt_lines(measurement.doubts, most=20)
+    return "\n".join(lines) + "\n" + doubt_lines(measurement.doubts, most=20)
 
 
 def stopwatch_text(measurement: Measurement) -> str:
@@ -47,13 +47,13 @@ def stopwatch_text(measurement: Measurement) -> str:
     assert stopwatch is not None
     rows = _inertia_rows(measurement.inertia) if measurement.inertia is not None else []
     rows += _stopwatch_rows(stopwatch)
-    lines = [_table(rows), "", "  trial  swings   seconds    period s  verdict"]
+    lines = [table(rows), "", "  trial  swings   seconds    period s  verdict"]
     for number, trial in enumerate(stopwatch.trials, start=1):
         fits = f" (fits {trial.swings_that_fit} swings)" if trial.swings_that_fit is not None else ""
         lines.append(
             f"  {number:>5}{trial.swings:>8}{trial.seconds:>10.2f}{trial.period_s:>12.4f}  {trial.verdict}{fits}"
         )
-    return "\n".join(lines) + "\n" + _doubt_lines(measurement.doubts, most=20)
+    return "\n".join(lines) + "\n" + doubt_lines(measurement.doubts, most=20)
 
 
 def audit_text(path: Path, *, written_to: str = "") -> str:
@@ -186,11 +186,11 @@ def _stopwatch_rows(stopwatch: Stopwatch) -> list[tuple[str, str]]:
 
 
 def _budget_table(inertia: Inertia) -> str:
-    lines = [f"  {'input':<16}{'value':>14}{'u':>12}  {'unit':<10}{'share':>8}"]
-    for line in inertia.budget:
-        lines.append(
-            f"  {line.input.replace('_', ' '):<16}{line.value:>14.6g}{line.u:>12.2g}  {line.unit:<10}{100 * line.share:>7.1f} %"
-        )
+    lines: list[str] = [f"  {'input':<16}{'value':>14}{'u':>12}  {'unit':<10}{'share':>8}"]
+    lines += [
+        f"  {line.input.replace('_', ' '):<16}{line.value:>14.6g}{line.u:>12.2g}  {line.unit:<10}{100 * line.share:>7.1f} %"
+        for line in inertia.budget
+    ]
     if inertia.monte_carlo is not None:
         low, high = inertia.monte_carlo.interval_95
         says = "agrees" if inertia.monte_carlo.agrees else "does not agree: take the Monte Carlo interval"
@@ -200,7 +200,7 @@ def _budget_table(inertia: Inertia) -> str:
     return "\n".join(lines)
 
 
-def _table(rows: list[tuple[str, str]]) -> str:
+def table(rows: list[tuple[str, str]]) -> str:
     """Two aligned columns; only what is too long for one line is folded."""
     wide = max((len(name) for name, _ in rows), default=0) + 2
     lines = []
@@ -212,12 +212,12 @@ def _table(rows: list[tuple[str, str]]) -> str:
 
 
 def _page(rows: list[tuple[str, str]], doubts: tuple[Doubt, ...], *, most_lines: int = MOST_LINES) -> str:
-    table = _table(rows)
-    room = most_lines - table.count("\n") - 2
-    return table + "\n" + _doubt_lines(doubts, most=max(1, room // 2), room=room)
+    upper = table(rows)
+    room = most_lines - upper.count("\n") - 2
+    return upper + "\n" + doubt_lines(doubts, most=max(1, room // 2), room=room)
 
 
-def _doubt_lines(doubts: tuple[Doubt, ...], *, most: int, room: int = 60) -> str:
+def doubt_lines(doubts: tuple[Doubt, ...], *, most: int, room: int = 60) -> str:
     if not doubts:
         return "no warnings"
     lines = []
