@@ -15,7 +15,7 @@ import numpy as np
 
 from ..errors import BadClip
 from ..records import ClipFacts, Doubt, Floats, Frame
-from .planes import frame_of
+from .first_planes import frame_of
 from .slow_motion import CaptureRate, capture_rate, looks_stretched
 from .timing import TimingAudit, audit_times, find_repeats, timing_doubts
 

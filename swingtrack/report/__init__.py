@@ -6,16 +6,16 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from .combined_text import combined_text, solids_text, tensor_text
+    from .combined import combined_text, solids_text, tensor_text
     from .figures import all_figures, figure_files
     from .html import render_report
     from .rounding import rounded, show
     from .text import audit_text, inertia_text, stopwatch_text, summary_text
 
 _HOMES = {
-    "combined_text": "combined_text",
-    "solids_text": "combined_text",
-    "tensor_text": "combined_text",
+    "combined_text": "combined",
+    "solids_text": "combined",
+    "tensor_text": "combined",
     "all_figures": "figures",
     "figure_files": "figures",
     "render_report": "html",

@@ -1,21 +1,33 @@
 """The one rounding rule: the uncertainty to two significant digits, the value to the same place.
 
-GUM (JCGM 100:2008), 7.2.6: uncertainties to at most two significant digits, the value rounded to agree. Halves go
-to the even digit.
+GUM (JCGM 100:2008), 7.2.6: uncertainties to at most two significant digits, the value rounded to agree with it.
+Halves go to the even digit. Every number that report/ shows passes through here.
 """
 
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping
 from decimal import ROUND_HALF_EVEN, Decimal
+from typing import Any
 
 from ..records import Quantity
 
-FEW_DIGITS = 6  # of a number that has no uncertainty to say how many are meant
+FEW_DIGITS = 6  # of a measured number that came without uncertainty: enough to be recognised, never the doubt itself
+SHARE_FLOOR = 0.0005  # shares of a variance below it are shown as "< 0.1 %"
+# Written out from a thousandth up to a hundred thousand; beyond that with a power of ten. Common practice, no source.
+PLAIN_FROM, PLAIN_TO = 1e-3, 1e5
+UNKNOWN = "not known"
 
 
 def rounded(value: float, u: float) -> tuple[str, str]:
     """Value and uncertainty as plain decimals by the rule.
+
+    Parameters
+    ----------
+    value, u : float
+        In the same unit. Where `u` is zero or not finite nothing says how many digits are meant: the value then
+        keeps six significant digits and the uncertainty is "0".
 
     Examples
     --------
@@ -23,11 +35,131 @@ def rounded(value: float, u: float) -> tuple[str, str]:
     ('2.242720', '0.000082')
     >>> rounded(1234.5, 37.2)
     ('1234', '37')
+    >>> rounded(0.5, 0.0996)
+    ('0.50', '0.10')
     """
-    if not (math.isfinite(u) and u > 0.0):
+    if not (math.isfinite(u) and u > 0.0 and math.isfinite(value)):
         return f"{value:.{FEW_DIGITS}g}", "0"
     place = _place(u)
     return _at(value, place), _at(u, place)
+
+
+def show(quantity: Quantity | None, unit: str = "", *, scale: float = 1.0, k: float = 1.0) -> str:
+    """ "1.12840 ± 0.00012 s": value ± k·u.
+
+    Parameters
+    ----------
+    quantity : Quantity or None
+        None is what can't be known.
+    unit : str
+        To show; the quantity's own where it is "".
+    scale : float
+        What one of the quantity's own unit is in `unit`.
+    k : float
+        Coverage factor; 1 shows the standard uncertainty.
+
+    Examples
+    --------
+    >>> show(Quantity(1.128403, 0.0001234, "s"))
+    '1.12840 ± 0.00012 s'
+    >>> show(Quantity(0.0031984, 1.2e-5, "kg m^2"), "g cm²", scale=1e7, k=2.0)
+    '31980 ± 240 g cm²'
+    >>> show(Quantity(3.1984e-4, 1.2e-6, "kg m^2"))
+    '(3.198 ± 0.012)·10⁻⁴ kg m²'
+    """
+    if quantity is None or not math.isfinite(quantity.value):
+        return UNKNOWN
+    return _written(quantity.value * scale, abs(scale) * quantity.u * k, pretty(unit or quantity.unit))
+
+
+def show_entry(entry: Mapping[str, Any] | None, unit: str = "", *, scale: float = 1.0, k: float = 1.0) -> str:
+    """`show` of a quantity as result.json holds it: {"value", "u", "unit"}, or null."""
+    if entry is None or entry.get("value") is None:
+        return UNKNOWN
+    u = entry.get("u")
+    bare = math.nan if u is None else float(u)
+    return show(Quantity(float(entry["value"]), bare, str(entry["unit"])), unit, scale=scale, k=k)
+
+
+def bare(value: float | None, digits: int = 3, unit: str = "") -> str:
+    """A number that has no uncertainty of its own, to so many significant digits, trailing zeros kept.
+
+    Examples
+    --------
+    >>> bare(0.4, unit="Hz"), bare(1234567.0, 4), bare(2.5e-7, 2)
+    ('0.400 Hz', '1234567', '2.5·10⁻⁷')
+    """
+    if value is None or not math.isfinite(value):
+        return UNKNOWN
+    if value == 0.0:
+        return _with_unit("0", pretty(unit))
+    exponent = Decimal(value).adjusted()
+    if abs(value) >= PLAIN_FROM:
+        return _with_unit(_at(value, min(exponent - digits + 1, 0)), pretty(unit))
+    text = _at(value / 10.0**exponent, 1 - digits)
+    return _with_unit(f"{text}·10{_raised(exponent)}", pretty(unit))
+
+
+def percent(part: float | None, *, decimals: int = 1) -> str:
+    """A part of one as percent.
+
+    Examples
+    --------
+    >>> percent(0.79918), percent(8e-5), percent(0.5, decimals=0)
+    ('79.9 %', '< 0.1 %', '50 %')
+    """
+    if part is None or not math.isfinite(part):
+        return UNKNOWN
+    if 0.0 < part < SHARE_FLOOR:
+        return "< 0.1 %"
+    return f"{_at(100.0 * part, -decimals)} %"
+
+
+def change(relative: float, u: float = 0.0) -> str:
+    """A relative change as signed percent, to two digits of its uncertainty, or of itself without one.
+
+    Examples
+    --------
+    >>> change(-0.00183172), change(-0.00015, 1.5e-5), change(0.0)
+    ('−0.18 %', '(−0.0150 ± 0.0015) %', '0 %')
+    """
+    if relative == 0.0 and u == 0.0:
+        return "0 %"
+    if u > 0.0:
+        value, doubt = rounded(100.0 * relative, 100.0 * u)
+        return f"({_signed(value)} ± {doubt}) %"
+    return f"{_signed(_at(100.0 * relative, _place(abs(100.0 * relative))))} %"
+
+
+def pretty(unit: str) -> str:
+    """A unit as people write it: "kg m^2" → "kg m²", "1" → "".
+
+    Examples
+    --------
+    >>> pretty("kg m^2"), pretty("1"), pretty("1/s"), pretty("deg")
+    ('kg m²', '', '1/s', '°')
+    """
+    if unit in ("1", ""):
+        return ""
+    if unit == "deg":
+        return "°"
+    return unit.replace("^2", "²").replace("^3", "³")
+
+
+def _written(value: float, u: float, unit: str) -> str:
+    known = math.isfinite(u) and u > 0.0
+    power = _power(max(abs(value), u if known else 0.0))
+    text, doubt = rounded(value / 10.0**power, u / 10.0**power)
+    both = f"{_signed(text)} ± {doubt}" if known else _signed(text)
+    if power:
+        return _with_unit(f"({both})·10{_raised(power)}" if known else f"{both}·10{_raised(power)}", unit)
+    if unit in ("°", "%") and known:
+        return f"({both}){'' if unit == '°' else ' '}{unit}"
+    return _with_unit(both, unit)
+
+
+def _with_unit(text: str, unit: str) -> str:
+    return f"{text}{unit}" if unit == "°" else f"{text} {unit}".rstrip()
 
 
 def _place(u: float) -> int:
@@ -40,29 +172,16 @@ def _place(u: float) -> int:
 
 
 def _at(value: float, place: int) -> str:
-    number = Decimal(value).quantize(Decimal(1).scaleb(min(place, 0)), ROUND_HALF_EVEN)
-    if place > 0:
-        number = Decimal(value).quantize(Decimal(1).scaleb(place), ROUND_HALF_EVEN)
-    return f"{number:f}"
+    return f"{Decimal(value).quantize(Decimal(1).scaleb(place), ROUND_HALF_EVEN):f}"
 
 
-def show(quantity: Quantity | None, unit: str = "", *, scale: float = 1.0, k: float = 1.0) -> str:
-    """ "1.12840 ± 0.00012 s": value ± k·u in `unit`, of which one is `scale` of the quantity's own."""
-    if quantity is None:
-        return "not known"
-    unit = unit or quantity.unit
-    value, u = quantity.value * scale, quantity.u * scale * k
-    power = _power(max(abs(value), u))
-    if power:
-        text, doubt = rounded(value / 10.0**power, u / 10.0**power)
-        return f"({text} ± {doubt})·10{_raised(power)} {unit}".rstrip()
-    text, doubt = rounded(value, u)
-    return f"{text} ± {doubt} {unit}".rstrip() if u > 0.0 else f"{text} {unit}".rstrip()
+def _signed(text: str) -> str:
+    return text.replace("-", "−")
 
 
 def _power(size: float) -> int:
-    """Power of ten to take out: none between 0.001 and a hundred thousand."""
-    if size == 0.0 or not math.isfinite(size) or 1e-3 <= size < 1e5:
+    """Power of ten to take out: none from a thousandth to a hundred thousand."""
+    if size == 0.0 or not math.isfinite(size) or PLAIN_FROM <= size < PLAIN_TO:
         return 0
     return math.floor(math.log10(size))
 

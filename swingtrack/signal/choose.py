@@ -16,7 +16,7 @@ import numpy as np
 from swingtrack.records import Floats
 from swingtrack.signal.fitting import Fitted, fit_model, fit_robustly
 from swingtrack.signal.model import SLOW, SwingModel, mode_name
-from swingtrack.signal.modes import RESOLVED_BEATS, SAME_BEATS, ModeFound, add_mode, find_mode
+from swingtrack.signal.modes import RESOLVED_BEATS, SAME_BEATS, ModeFound, add_mode, find_mode, floor_at_swing
 from swingtrack.signal.noise import Noise, measure_noise
 
 # A step with less than this in hand is not taken: "strong" evidence (difference of 6 in the criterion).
@@ -25,8 +25,14 @@ DAMPING_PARAMETERS = {"viscous": "zeta", "quadratic": "beta", "dry": "dry"}
 MOST_TERMS = 12
 # Residuals below this share of the amplitude are finer than any record; terms found in them are the solver's own.
 FINE_ENOUGH = 1e-7
-# A swarm of wander reaches this far about the swing.
+# A swarm of wander reaches this far about the swing: turns of the beat, and share of the swing's frequency.
 SWARM_BEATS = 6.0
+SWARM_REACH = 0.12
+# A swarm that lowers the residuals to less than this is more than wander.
+SWARM_GAIN = 0.6
+# A mode near the swing, with its four parameters, can stand in for a wrong damping law: that comes first unless the
+# mode has this much more in hand.
+NEAR_DISCOUNT = 0.25
 # A mode that is hardly resolved and larger than this share of the swing is the swing itself, in two parts.
 LARGEST_NEAR = 0.6
 # Two motions whose beat makes fewer turns than this in the clip are hardly told apart.
@@ -60,11 +66,14 @@ def choose_terms(fitted: Fitted, choices: Choices) -> Fitted:
     """Add the terms that pay, drop those that do not, and return the fit with them.
 
     A phase that wanders (a clock that runs unevenly) looks like a swarm of modes close about the swing. Modes there
-    are believed only when they leave nothing of the kind behind.
+    are believed only when they leave nothing of the kind behind, or explain most of it.
     """
     found = _choose(fitted, choices)
-    if _nearest_beats(found) < SWARM_BEATS and noise_of(found).structured:
-        return _choose(fitted, replace(choices, nearest_beats=SWARM_BEATS))
+    if np.isfinite(_nearest_beats(found)) and noise_of(found).structured:
+        reach = SWARM_REACH * fitted.model.values["omega0"] / (2 * np.pi) * fitted.model.length_s
+        without = _choose(fitted, replace(choices, nearest_beats=max(SWARM_BEATS, reach)))
+        if found.sigma > SWARM_GAIN * without.sigma:
+            return without
     return found
 
 
@@ -96,7 +105,7 @@ def _price(parameters: int, noise: Noise, extra: float = 0.0) -> float:
 def _best_step(fitted: Fitted, choices: Choices) -> Fitted | None:
     """The one more term with the most in hand, fitted; None where none pays."""
     noise = noise_of(fitted)
-    level = fitted.sigma**2 * noise.colour_inflation
+    level = fitted.sigma**2 * floor_at_swing(fitted)
     offers: list[tuple[float, tuple[str, ...] | ModeFound]] = []
     candidates = _candidates(fitted, choices)
     for names, fall in zip(candidates, projected_gains(fitted, candidates), strict=True):
@@ -105,8 +114,11 @@ def _best_step(fitted: Fitted, choices: Choices) -> Fitted | None:
     if fitted.model.modes < choices.most_modes:
         found = find_mode(fitted, beats=(choices.nearest_beats, np.inf))
         if found is not None:
-            hand = found.gain / (fitted.sigma**2 * found.inflation)
-            offers.append((hand - _price(4, noise, 2 * float(np.log(found.tried))), found))
+            hand = found.gain / (fitted.sigma**2 * found.inflation) - _price(
+                4, noise, 2 * float(np.log(found.tried))
+            )
+            near = abs(found.omega / fitted.model.values["omega0"] - 1) < SWARM_REACH
+            offers.append((hand * (NEAR_DISCOUNT if near else 1.0), found))
     offers.sort(key=lambda offer: -offer[0])
     for hand, what in offers:
         if hand <= 0:
@@ -209,7 +221,7 @@ def _drop_idle(fitted: Fitted, choices: Choices) -> Fitted:
             return fitted
         noise = noise_of(fitted)
         covariance = fitted.outcome.unscaled_covariance()
-        level = fitted.sigma**2 * noise.colour_inflation
+        level = fitted.sigma**2 * floor_at_swing(fitted)
         losses = {}
         for name in present:
             i = free.index(name)
@@ -259,7 +271,7 @@ def unresolved_modes(fitted: Fitted, choices: Choices) -> list[Fitted]:
     if choices.most_modes == 0:
         return []
     noise = noise_of(fitted)
-    level = fitted.sigma**2 * max(noise.colour_inflation, 1e-12)
+    level = fitted.sigma**2 * floor_at_swing(fitted)
     rivals = []
     for side in (-1, 1):
         found = find_mode(fitted, beats=(SAME_BEATS, RESOLVED_BEATS), side=side)

@@ -175,35 +175,61 @@ def _walk(
 ) -> tuple[Floats, Floats, Floats, Floats] | None:
     """Turning points from the first to just past `x_end`, with derivatives to the seven parameters.
 
-    `half` holds durations (not rates) as coefficients over the amplitude.
+    `half` holds durations (not rates) as coefficients over the amplitude. Only the chain of amplitudes is walked one
+    by one; durations and derivatives follow for all half-swings at once.
     """
     low, high = span
-    n = len(half.rate)
-    lasts = half.coefficients.sum(axis=1)  # q at s = 1, where every T_j is 1
-    d_lasts = half.d_coefficients.sum(axis=1)
-    stacked = np.column_stack([-lasts, half.rate, -d_lasts, half.d_rate])  # (n, 12)
-    orders = np.arange(n)
-    d_x = np.zeros(7)
-    d_a = np.zeros(7)
-    d_a[0] = 1.0
-    x, a = 0.0, state.amplitude
-    xs, found, d_xs, d_found = [x], [a], [d_x], [d_a]
+    next_amplitude = -half.coefficients.sum(axis=1)  # −q at s = 1, where every T_j is 1
+    found = _chain(state.amplitude, next_amplitude, half.rate, (low, high, x_end))
+    if found is None:
+        return None
+    amplitudes = np.array(found)
+    in_a = _chebyshev_rows(
+        np.clip((2 * amplitudes[:-1] - low - high) / (high - low), -1.3, 1.3), len(half.rate)
+    )
+    xs = np.concatenate([[0.0], np.cumsum(in_a @ half.rate)])
+    d_next = in_a @ -half.d_coefficients.sum(axis=1)  # (k, 5)
+    d_duration = in_a @ half.d_rate
+    # a_(k+1) = H(a_k, p): its derivative d_(k+1) = H_a d_k + H_p, solved by the running product of H_a.
+    product = np.concatenate([[1.0], np.cumprod(d_next[:, 0])])
+    if not np.all(np.isfinite(xs)) or np.any(np.abs(product) < 1e-250):
+        return None
+    d_amplitudes = np.zeros((len(amplitudes), 7))
+    d_amplitudes[:, 0] = product
+    d_amplitudes[1:, 3:] = product[1:, None] * np.cumsum(d_next[:, 1:] / product[1:, None], axis=0)
+    d_xs = np.zeros((len(amplitudes), 7))
+    steps = d_duration[:, :1] * d_amplitudes[:-1]
+    steps[:, 3:] += d_duration[:, 1:]
+    d_xs[1:] = np.cumsum(steps, axis=0)
+    return xs, amplitudes, d_xs, d_amplitudes
+
+
+def _chain(
+    start: float, next_amplitude: Floats, duration: Floats, limits: tuple[float, float, float]
+) -> list[float] | None:
+    """Amplitudes at the turning points; plain floats, as the loop is short work for them and long for arrays."""
+    low, high, x_end = limits
+    nexts, durations = next_amplitude.tolist(), duration.tolist()
+    x, a = 0.0, start
+    found = [a]
     for _ in range(MOST_HALF_SWINGS):
         scaled = min(max((2 * a - low - high) / (high - low), -1.3), 1.3)
-        angle = np.arccos(scaled) if abs(scaled) <= 1 else None
-        basis = np.cos(orders * angle) if angle is not None else chebyshev.chebvander(scaled, n - 1).ravel()
-        values = basis @ stacked
-        d_next = values[2] * d_a
-        d_next[3:] += values[3:7]
-        d_x = d_x + values[7] * d_a
-        d_x[3:] += values[8:12]
-        a, x, d_a = float(values[0]), x + float(values[1]), d_next
-        xs.append(x)
-        found.append(a)
-        d_xs.append(d_x)
-        d_found.append(d_a)
-        if not (values[1] > 0 and np.isfinite(a)):
+        one, two = 0.0, 0.0  # Clenshaw's recurrence, both series together
+        length, length_before = 0.0, 0.0
+        twice = 2 * scaled
+        for c, d in zip(nexts[:0:-1], durations[:0:-1], strict=True):
+            one, two = c + twice * one - two, one
+            length, length_before = d + twice * length - length_before, length
+        a = nexts[0] + scaled * one - two
+        step = durations[0] + scaled * length - length_before
+        if not (step > 0 and abs(a) < 1e6):
             return None
+        x += step
+        found.append(a)
         if x > x_end:
-            break
-    return np.array(xs), np.array(found), np.array(d_xs), np.array(d_found)
+            return found
+    return None
+
+
+def _chebyshev_rows(x: Floats, terms: int) -> Floats:
+    return np.asarray(chebyshev.chebvander(x, terms - 1))

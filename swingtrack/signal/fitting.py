@@ -8,14 +8,16 @@ import numpy as np
 
 from swingtrack.records import Bools, Floats
 from swingtrack.signal.model import SwingModel
-from swingtrack.signal.solver import LeastSquares, minimise
+from swingtrack.signal.solver import MOST_STEPS, LeastSquares, minimise
 
-# Rounds of setting outliers aside; the set hardly ever changes after the third.
-ROUNDS = 6
+# Rounds of setting outliers aside; the set hardly ever changes after the third. Fewer while terms are still chosen.
+ROUNDS, FINAL_ROUNDS = 2, 6
 # Noise is never taken for less than this share of the amplitude: rounding of the model itself.
 NOISE_FLOOR = 1e-11
 # Nothing within this share of the amplitude is a bad frame, however well the rest may fit.
 OUTLIER_FLOOR = 1e-6
+# A fit that is not the last and has not settled by then is on its way to nowhere.
+QUICK_STEPS = 25
 SPARE_SAMPLES = 8  # samples beyond the number of parameters, or nothing is left to tell the noise by
 MAD_TO_SIGMA = 1.4826  # normal distribution
 
@@ -87,7 +89,13 @@ def fit_model(
         return r, jacobian
 
     try:
-        outcome = minimise(residuals, fitted.vector(), gain=1e-7 if quick else 1e-12, polish=not quick)
+        outcome = minimise(
+            residuals,
+            fitted.vector(),
+            most_steps=QUICK_STEPS if quick else MOST_STEPS,
+            gain=1e-7 if quick else 1e-12,
+            polish=not quick,
+        )
     except ValueError:
         return None
     best = model.with_vector(outcome.parameters)
@@ -113,7 +121,7 @@ def fit_robustly(
     `final` goes to the last digit in the end.
     """
     fitted = fit_model(model, samples, sigma=sigma, quick=True)
-    for _ in range(ROUNDS):
+    for _ in range(FINAL_ROUNDS if final else ROUNDS):
         if fitted is None:
             return None
         size = fitted.model.values["amplitude"] * abs(fitted.model.values["radius"])

@@ -23,6 +23,7 @@ COARSE_CANDIDATES = 6
 # A clip resolves two motions when their beat makes a whole turn in it; less than a tenth of one is the same motion.
 RESOLVED_BEATS = 1.0
 SAME_BEATS = 0.1
+LEAST_FLOOR = 0.02
 
 
 @dataclass(frozen=True)
@@ -69,12 +70,27 @@ def find_mode(fitted: Fitted, *, beats: tuple[float, float], side: int = 0) -> M
     gains = np.array([_gain(t, r, weight, q, 2 * np.pi * f)[0] for f in grid])
     i = int(np.argmax(gains))
     gain, a, b, decay = _gain(t, r, weight, q, 2 * np.pi * grid[i])
-    # Mean square of the amplitude spectrum over white noise of the residuals' size, from the running median.
-    white = 4 * float(np.mean(r**2)) / len(r)
-    median = float(np.interp(grid[i], spectrum.hz[shown], floor))
-    inflation = max(median**2 / np.log(2) / max(white, 1e-300), 0.05)
+    inflation = _over_white(float(np.interp(grid[i], spectrum.hz[shown], floor)), r)
     tried = int(shown.sum() / 4) + 10
     return ModeFound(2 * np.pi * float(grid[i]), a, b, decay, gain, inflation, tried)
+
+
+def floor_at_swing(fitted: Fitted) -> float:
+    """Noise density at the swing's frequency over the mean density, by the running median of the residual's spectrum.
+
+    Lines that are not yet in the model do not raise a median, as they would an autoregression.
+    """
+    kept = fitted.samples.kept
+    t, r = fitted.samples.t[kept], fitted.kept_residuals
+    spectrum = amplitude_spectrum(t, r)
+    hz = fitted.model.values["omega0"] / (2 * np.pi)
+    return _over_white(float(np.interp(hz, spectrum.hz, background(spectrum))), r)
+
+
+def _over_white(median: float, r: Floats) -> float:
+    """Mean power by the median amplitude (Rayleigh: median² = ln 2 · mean square) over that of white residuals."""
+    white = 4 * float(np.mean(r**2)) / len(r)
+    return max(median**2 / float(np.log(2)) / max(white, 1e-300), LEAST_FLOOR)
 
 
 def _gain(t: Floats, r: Floats, weight: Floats, q: Floats, omega: float) -> tuple[float, float, float, float]:
