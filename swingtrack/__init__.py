@@ -1,8 +1,8 @@
 """Moment of inertia, period and damping of a hanging article from a clip of its swing.
 
 >>> import swingtrack
->>> sorted(swingtrack.__all__)[:4]
-['Measurement', 'Quantity', 'Rig', 'combine']
+>>> swingtrack.__all__[3]
+'combine_results'
 """
 
 from __future__ import annotations
@@ -11,40 +11,46 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from .api import combine, fit, follow, inertia, measure, read_rig, stopwatch
+    from .api import (
+        combine_results,
+        fit_series,
+        follow_clip,
+        judge_trials,
+        measure_clip,
+        moment_from_period,
+        read_rig,
+    )
     from .records import Measurement, Quantity, Rig
 
 _HOMES = {
     "Measurement": "records",
     "Quantity": "records",
     "Rig": "records",
-    "combine": "api",
-    "fit": "api",
-    "follow": "api",
-    "inertia": "api",
-    "measure": "api",
+    "combine_results": "api",
+    "fit_series": "api",
+    "follow_clip": "api",
+    "judge_trials": "api",
+    "measure_clip": "api",
+    "moment_from_period": "api",
     "read_rig": "api",
-    "stopwatch": "api",
 }
 
 __all__ = [
     "Measurement",
     "Quantity",
     "Rig",
-    "combine",
-    "fit",
-    "follow",
-    "inertia",
-    "measure",
+    "combine_results",
+    "fit_series",
+    "follow_clip",
+    "judge_trials",
+    "measure_clip",
+    "moment_from_period",
     "read_rig",
-    "stopwatch",
 ]
 
 
 def __getattr__(name: str) -> Any:
     """Load each name's module on first use, so that importing the package costs nothing."""
     if name in _HOMES:
-        value = getattr(import_module(f".{_HOMES[name]}", __name__), name)
-        globals()[name] = value  # a submodule of the same name must not take its place later
-        return value
+        return getattr(import_module(f".{_HOMES[name]}", __name__), name)
     raise AttributeError(f"module {__name__!r} has no attribute {name!r}")

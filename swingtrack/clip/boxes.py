@@ -46,8 +46,13 @@ def video_edits(file: FilePath) -> list[Edit]:
         with open(file, "rb") as stream:
             whole = Box(b"", 0, stream.seek(0, 2))
             for track in _within(stream, whole, b"moov", b"trak"):
-                if any(_read(stream, box, 16)[8:12] == b"vide" for box in _within(stream, track, b"mdia", b"hdlr")):
-                    return [e for box in _within(stream, track, b"edts", b"elst") for e in _edits(stream, box)]
+                if any(
+                    _read(stream, box, 16)[8:12] == b"vide"
+                    for box in _within(stream, track, b"mdia", b"hdlr")
+                ):
+                    return [
+                        e for box in _within(stream, track, b"edts", b"elst") for e in _edits(stream, box)
+                    ]
     except (OSError, struct.error):
         return []
     return []

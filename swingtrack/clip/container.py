@@ -32,7 +32,9 @@ def check_file(file: FilePath) -> None:
     if file.is_dir():
         raise BadClip(f"{file} is a folder.", "Needed: a video file.", "Name the clip inside it.")
     if not file.is_file():
-        raise BadClip(f"{file} is not an ordinary file.", "Needed: a video file.", "Copy the clip to a disk first.")
+        raise BadClip(
+            f"{file} is not an ordinary file.", "Needed: a video file.", "Copy the clip to a disk first."
+        )
     if not os.access(file, os.R_OK):
         raise BadClip(
             f"{file} may not be read.", "Needed: permission to read it.", "Change its permissions or copy it."
@@ -80,7 +82,9 @@ def pick_video(container: Any, file: FilePath) -> tuple[Any, list[str]]:
         holds = ", ".join({"audio": "sound"}.get(kind, kind) for kind in other) or "nothing that can be shown"
         if container.streams.video:
             holds = f"a cover picture and {holds}" if other else "a still picture"
-        raise BadClip(f"{file} holds {holds}, no moving picture.", "Needed: a video track.", "Give the clip itself.")
+        raise BadClip(
+            f"{file} holds {holds}, no moving picture.", "Needed: a video track.", "Give the clip itself."
+        )
     stream = films[0]
     if stream.codec_context is None:
         raise BadClip(

@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Callable, Mapping, Sequence
-from dataclasses import dataclass, replace
+from collections.abc import Mapping, Sequence
+from dataclasses import replace
 from typing import Any
 
 import numpy as np
@@ -12,26 +12,23 @@ import numpy as np
 from ..errors import BadInput
 from ..records import AddedWeight, Doubt, Floats, Quantity, Rig
 from .combine import CombinedResult, NamedQuantity, Run, need_kind, need_runs, need_same
-from .combine_adjust import check_by_draws, derive
-from .combine_inputs import JointInputs, doubts_of, join_inputs
+from .combine_adjust import derive
+from .combine_draws import check_by_draws
+from .combine_inputs import doubts_of
 from .combine_scatter import run_lines, settle
+from .combine_weight_line import FOUR_PI_2, ON_STRINGS, WeightLine
 from .moment import advise
-from .suspension import need_mass
 
-FOUR_PI_2 = 4.0 * math.pi**2
-ON_STRINGS = ("bifilar", "trifilar")
 KINDS = (*ON_STRINGS, "torsion-wire")
-SMALL_STEP = (
-    0.3  # largest added moment over the article's below which the line is too short to lean on: our judgment
-)
+# Largest added moment over the article's below which the line is too short to lean on: our judgment.
+SMALL_STEP = 0.3
 PAIR_TOLERANCE = 0.01  # two weights balance one another where masses and distances agree to this, relative
 CONSTANTS = {
     True: ("m^2/s^2", "restoring torque per mass and angle, g a b/h0"),
     False: ("N m/rad", "twist stiffness of the wire"),
 }
-CONSTANT_TOLERANCE = (
-    3.0  # standard uncertainties between the constant found and the one from the stated dimensions
-)
+# Standard uncertainties between the constant found and the one from the stated dimensions.
+CONSTANT_TOLERANCE = 3.0
 
 
 def fit_added_weights(runs: Sequence[Run]) -> CombinedResult:
@@ -59,7 +56,7 @@ def fit_added_weights(runs: Sequence[Run]) -> CombinedResult:
     need_same(runs, "suspension", [run.rig.suspension.kind for run in runs])
     need_same(runs, "article", [run.rig.article.name for run in runs])
     need_same(runs, "axis", [run.rig.article.axis for run in runs])
-    line = _Line.of(runs)
+    line = WeightLine.of(runs)
     joint, plain = line.joint, line.joint.values()
     added = np.array([float(line.added(i, plain)) for i in range(len(runs))])
     if np.ptp(added) <= 1e-9 * max(added.max(), 1e-300):
@@ -114,117 +111,6 @@ def fit_added_weights(runs: Sequence[Run]) -> CombinedResult:
             *doubts_of(runs),
         ),
     )
-
-
-@dataclass(frozen=True)
-class _Line:
-    """The terms of C M T² = I + added, for each run, out of the joint inputs."""
-
-    joint: JointInputs
-    weights: tuple[tuple[tuple[str, str, str | None], ...], ...]  # joint names of mass, distance, own moment
-    on_strings: bool
-
-    @classmethod
-    def of(cls, runs: Sequence[Run]) -> _Line:
-        found, weights = _weight_inputs(runs)
-        on_strings = runs[0].rig.suspension.kind in ON_STRINGS
-        if on_strings:
-            need_mass(runs[0].rig)
-        joint = join_inputs(runs, keys=_keys(runs[0].rig) if on_strings else ())
-        return cls(joint.with_inputs(found), weights, on_strings)
-
-    def added(self, run: int, x: Mapping[str, Any]) -> Any:
-        """Σ (m d² + own moment), kg m²."""
-        return sum(
-            (
-                x[mass] * x[distance] ** 2 + (x[own] if own else 0.0)
-                for mass, distance, own in self.weights[run]
-            ),
-            0.0,
-        )
-
-    def pull(self, run: int, constant: Any, x: Mapping[str, Any]) -> Any:
-        """C M T² (strings, with half their mass, and their twist beside it) or C T² (torsion wire)."""
-        here = self.joint.local(run, x)
-        if not self.on_strings:
-            return constant * here["period"] ** 2
-        mass = (
-            here["mass"]
-            + sum((x[name] for name, _, _ in self.weights[run]), 0.0)
-            + 0.5 * here.get("string_mass", 0.0)
-        )
-        return (constant * mass + here.get("string_stiffness", 0.0) / FOUR_PI_2) * here["period"] ** 2
-
-    def beside(self, run: int, x: Mapping[str, Any]) -> Any:
-        """What swings beside article and weights: the strings' own M_s D²/12 (D across, below) and the air."""
-        here = self.joint.local(run, x)
-        air = self.joint.carried_air(run, x)
-        if "string_mass" not in here:
-            return air
-        if "upper_spacing" in here:
-            across = here.get("lower_spacing", here["upper_spacing"])
-        else:
-            across = 2.0 * here.get("lower_radius", here["upper_radius"])
-        return air + here["string_mass"] * across**2 / 12.0
-
-    def whole(self, run: int) -> Callable[[Sequence[Any], Mapping[str, Any]], Any]:
-        """Moment of article and weights in one run, with the constant as fitted."""
-        return lambda p, x: self.pull(run, p[1], x) - self.beside(run, x)
-
-    def start(self, added: Floats) -> list[float]:
-        """Unknowns (I, C) by an ordinary straight line."""
-        plain = self.joint.values()
-        runs = range(len(self.joint.runs))
-        known = np.array([float(self.pull(i, 0.0, plain) - self.beside(i, plain)) for i in runs])
-        swing = np.array([float(self.pull(i, 1.0, plain) - self.pull(i, 0.0, plain)) for i in runs])
-        slope, intercept = np.polyfit(swing, added - known, 1)
-        return [-float(intercept), float(slope)]
-
-
-def _keys(rig: Rig) -> set[str]:
-    """Inputs that enter: the mass, and of the rest only what the strings' own mass and twist need."""
-    keys = {"mass", "string_mass", "string_stiffness"}
-    if "string_mass" in rig.suspension.dimensions:
-        keys |= {"upper_spacing", "lower_spacing", "upper_radius", "lower_radius"}
-    return keys
-
-
-def _weight_inputs(
-    runs: Sequence[Run],
-) -> tuple[dict[str, Quantity], tuple[tuple[tuple[str, str, str | None], ...], ...]]:
-    """Inputs of the weights: the n-th weight stated alike in two runs is one and the same weight."""
-    found: dict[str, Quantity] = {}
-    numbers: dict[tuple[Any, ...], str] = {}
-    used = []
-    for run in runs:
-        seen: dict[tuple[Any, ...], int] = {}
-        here = []
-        for weight in run.rig.article.added:
-
-            def name_of(what: str, quantity: Quantity, *more: Quantity) -> str:
-                stated = (what, quantity, *more)
-                seen[stated] = seen.get(stated, 0) + 1  # noqa: B023  # called in this very pass of the loop
-                mark = (*stated, seen[stated])  # noqa: B023
-                if mark not in numbers:
-                    count = sum(other[0] == what for other in numbers)
-                    numbers[mark] = f"{what} {count + 1}"
-                    found[numbers[mark]] = quantity
-                return numbers[mark]
-
-            own = (
-                None
-                if weight.own_moment is None
-                else name_of("own moment of weight", weight.own_moment, weight.mass)
-            )
-            here.append(
-                (
-                    name_of("mass of weight", weight.mass),
-                    name_of("distance of weight", weight.distance, weight.mass),
-                    own,
-                )
-            )
-        used.append(tuple(here))
-    return found, tuple(used)
 
 
 def _span_doubts(added: Floats, moment: Quantity) -> tuple[Doubt, ...]:

@@ -10,15 +10,15 @@ import numpy as np
 from ..errors import BadInput
 from ..records import Doubt, Quantity
 from .combine import CombinedResult, NamedQuantity, Run, need_kind, need_runs, need_same
-from .combine_adjust import check_by_draws, derive
+from .combine_adjust import derive
+from .combine_draws import check_by_draws
 from .combine_inputs import JointInputs, doubts_of, join_inputs, not_shared_doubts
 from .combine_scatter import own_moments, run_lines, settle, stored_moment_doubts
 from .moment import advise
 
 KINDS = ("bifilar", "trifilar", "torsion-wire")
-FAR_FROM_REFERENCE = (
-    4.0  # ratio of the two moments beyond which what does not quite cancel shows: common practice, no source
-)
+# Ratio of the two moments beyond which what does not quite cancel shows: common practice, no source.
+FAR_FROM_REFERENCE = 4.0
 REFERENCE_INPUT = "moment of the reference"
 
 

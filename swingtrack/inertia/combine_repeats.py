@@ -6,14 +6,14 @@ from collections.abc import Mapping, Sequence
 from typing import Any
 
 from .combine import CombinedResult, Run, need_runs, need_same
-from .combine_adjust import check_by_draws, derive
+from .combine_adjust import derive
+from .combine_draws import check_by_draws
 from .combine_inputs import doubts_of, join_inputs
 from .combine_scatter import own_moments, run_lines, settle, stored_moment_doubts
 from .moment import advise
 
-RARELY_WORTH_REPEATING = (
-    0.9  # share of the variance that all runs have in common above which repeats gain nothing
-)
+# Share of the variance that all runs have in common above which repeats gain nothing.
+RARELY_WORTH_REPEATING = 0.9
 
 
 def combine_repeats(runs: Sequence[Run]) -> CombinedResult:

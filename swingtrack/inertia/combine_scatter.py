@@ -52,7 +52,9 @@ def settle(joint: JointInputs, conditions: Conditions, start: Sequence[float]) -
         gross = adjusted.dof > 0 and adjusted.chi2 > GROSS**2 * adjusted.dof
     except Unsettled:
         gross = True
-    if gross:  # moving inputs by many of their u to please the runs would go astray: all linear, and said below
+    if (
+        gross
+    ):  # moving inputs by many of their u to please the runs would go astray: all linear, and said below
         adjusted = adjust(conditions, joint.quantities, start, at_measured=True)
     chi2, dof = adjusted.chi2, adjusted.dof
     scatter, claimed = pooled_scatter(joint)
@@ -82,7 +84,7 @@ def settle(joint: JointInputs, conditions: Conditions, start: Sequence[float]) -
     )
     doubt = Doubt(
         "scatter-over-claim",
-        f"The runs scatter {birge:.1f} times more than they claim (chance {100 * chance:.2g} % if the claims were right); "
+        f"The runs scatter {birge:.1f} times more than they claim (chance {_percent(chance)} if the claims were right); "
         f"{100 * tau:.2g} % a run was added.",
         "Find what changes from run to run: how it hangs, how it is released, draughts. Hang it anew for each run.",
     )
@@ -93,10 +95,11 @@ def settle(joint: JointInputs, conditions: Conditions, start: Sequence[float]) -
 
 def pooled_scatter(joint: JointInputs) -> tuple[float | None, float | None]:
     """Pooled relative standard deviation of runs hung alike, √(Σ(n−1)s²/Σ(n−1)), and their own claim (rms)."""
-    groups: dict[tuple[tuple[str, str], ...], list[int]] = {}
+    groups: dict[str, list[int]] = {}
     for index, (run, names) in enumerate(zip(joint.runs, joint.names, strict=True)):
-        alike = tuple(sorted((key, name) for key, name in names.items() if key != "period"))
-        groups.setdefault((*alike, ("added", repr(run.rig.article.added))), []).append(index)
+        article = run.rig.article
+        bench = sorted((key, name) for key, name in names.items() if key != "period")
+        groups.setdefault(repr((bench, article.name, article.axis, article.added)), []).append(index)
     moments, own = own_moments(joint)
     squares, freedom, claims = 0.0, 0, []
     for members in groups.values():
@@ -188,6 +191,10 @@ def stored_moment_doubts(joint: JointInputs) -> tuple[Doubt, ...]:
             "Measure again, or undo the change in the file.",
         ),
     )
+
+
+def _percent(chance: float) -> str:
+    return f"{100 * chance:.2g} %" if chance > 1e-4 else "below 0.01 %"
 
 
 def _own_scale(joint: JointInputs) -> float:

@@ -10,7 +10,8 @@ import numpy as np
 from ..errors import BadInput
 from ..records import Doubt, Quantity
 from .combine import CombinedResult, Run, need_kind, need_runs, need_same
-from .combine_adjust import check_by_draws, derive
+from .combine_adjust import derive
+from .combine_draws import check_by_draws
 from .combine_inputs import JointInputs, doubts_of, join_inputs, not_shared_doubts
 from .combine_scatter import run_lines, settle, stored_moment_doubts
 from .moment import advise

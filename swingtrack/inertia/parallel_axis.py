@@ -12,7 +12,8 @@ from ..errors import BadInput
 from ..records import Doubt, Floats, Quantity
 from .budget import propagate
 from .combine import CombinedResult, NamedQuantity, Run, need_kind, need_runs, need_same
-from .combine_adjust import check_by_draws, derive
+from .combine_adjust import derive
+from .combine_draws import check_by_draws
 from .combine_inputs import doubts_of, join_inputs
 from .combine_scatter import own_moments, run_lines, settle, stored_moment_doubts
 from .moment import advise

@@ -15,7 +15,8 @@ import numpy as np
 from ..errors import BadRig
 from ..records import BudgetLine, Doubt, Floats, Quantity
 from .budget import coverage_factor
-from .combine_adjust import COMPLEX_STEP, budget_lines, effective_dof, judge_draws
+from .combine_adjust import COMPLEX_STEP, budget_lines, effective_dof
+from .combine_draws import judge_draws
 from .monte_carlo import SEED, draw
 from .solids_compare import compare
 from .solids_parts import Assembly, Axis
@@ -126,7 +127,9 @@ def _quantity(
 ) -> tuple[Quantity, tuple[BudgetLine, ...]]:
     lines = budget_lines(amounts.inputs, slopes)
     u = math.sqrt(math.fsum(line.contribution**2 for line in lines))
-    doubtful = tuple(line for line in lines if line.u > 0.0)  # places left out are exact, and no part of a budget
+    doubtful = tuple(
+        line for line in lines if line.u > 0.0
+    )  # places left out are exact, and no part of a budget
     return Quantity(float(np.real(value)), u, unit, dof=effective_dof(lines, u)), doubtful
 
 

@@ -22,9 +22,8 @@ UNKNOWNS = ("xx", "yy", "zz", "yz", "xz", "xy")
 # An axis marked on an article and hung by eye stands within about a degree of where it was meant to: as a standard
 # uncertainty half a degree in each direction. Common practice, no source.
 AXIS_U_RAD = np.radians(0.5)
-POOR_CONDITION = (
-    10.0  # six axes spread as evenly as can be have 1.6; at ten the worst element is known six times worse
-)
+# Six axes spread as evenly as can be have 1.6; at ten the worst element is known six times worse.
+POOR_CONDITION = 10.0
 
 
 @dataclass(frozen=True)

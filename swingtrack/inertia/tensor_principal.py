@@ -10,11 +10,11 @@ import numpy as np
 
 from ..records import BudgetLine, Doubt, Floats, MonteCarlo, Quantity
 from .budget import coverage_factor
-from .combine_adjust import Adjusted, budget_lines, draw_unknowns, effective_dof, judge_draws
+from .combine_adjust import Adjusted, budget_lines, effective_dof
+from .combine_draws import draw_unknowns, judge_draws
 
-SENSE_TOLERANCE = (
-    2.0  # standard uncertainties by which a margin may lie under zero: a flat plate lies at zero itself
-)
+# Standard uncertainties by which a margin may lie under zero: a flat plate lies at zero itself.
+SENSE_TOLERANCE = 2.0
 APART = 3.0  # standard uncertainties between two principal moments below which their axes are not told apart
 
 

@@ -127,7 +127,7 @@ def _coverage(camera: Camera, rim: Floats, poses: list[Pose]) -> tuple[Any, int,
         fine = np.zeros((size[1] * FINE, size[0] * FINE), dtype=np.uint8)
         # a pixel's centre is an integer; its fine pixels are centred at (i + ½)/FINE − ½ of it
         places = (points - low + 0.5) * FINE - 0.5
-        cv2.fillPoly(fine, [_fixed(places)], 255, cv2.LINE_8, SHIFT)
+        cv2.fillPoly(fine, [_fixed(places)], 255, cv2.LINE_AA, SHIFT)
         total += cv2.resize(fine, (int(size[0]), int(size[1])), interpolation=cv2.INTER_AREA)
     return total / (255.0 * len(rims)), int(low[0]), int(low[1])
 

@@ -13,10 +13,13 @@ from typing import Any
 
 from ..records import Quantity
 
-FEW_DIGITS = 6  # of a measured number that came without uncertainty: enough to be recognised, never the doubt itself
+FEW_DIGITS = (
+    6  # of a measured number that came without uncertainty: enough to be recognised, never the doubt itself
+)
 SHARE_FLOOR = 0.0005  # shares of a variance below it are shown as "< 0.1 %"
 # Written out from a thousandth up to a hundred thousand; beyond that with a power of ten. Common practice, no source.
-PLAIN_FROM, PLAIN_TO = 1e-3, 1e5
+PLAIN_FROM_EXPONENT, PLAIN_TO_EXPONENT = -3, 5
+GROUP = "\N{NARROW NO-BREAK SPACE}"
 UNKNOWN = "not known"
 
 
@@ -93,11 +96,23 @@ def bare(value: float | None, digits: int = 3, unit: str = "") -> str:
         return UNKNOWN
     if value == 0.0:
         return _with_unit("0", pretty(unit))
-    exponent = Decimal(value).adjusted()
-    if abs(value) >= PLAIN_FROM:
-        return _with_unit(_at(value, min(exponent - digits + 1, 0)), pretty(unit))
-    text = _at(value / 10.0**exponent, 1 - digits)
-    return _with_unit(f"{text}·10{_raised(exponent)}", pretty(unit))
+    exponent = _first_place(abs(value), digits)
+    if exponent >= PLAIN_FROM_EXPONENT:
+        return _with_unit(_signed(_at(value, min(exponent - digits + 1, 0))), pretty(unit))
+    # Scaled as a decimal: dividing by a power of ten first would turn 0.0001 into 9.99….
+    text = f"{Decimal(value).scaleb(-exponent).quantize(Decimal(1).scaleb(1 - digits), ROUND_HALF_EVEN):f}"
+    return _with_unit(f"{_signed(text)}·10{_raised(exponent)}", pretty(unit))
+
+
+def count(number: int) -> str:
+    """A whole number, in groups of three from five digits on (SI Brochure, 5.4.4).
+
+    Examples
+    --------
+    >>> count(900), count(200000)
+    ('900', '200\u202f000')
+    """
+    return f"{number:,}".replace(",", GROUP) if abs(number) >= 10_000 else str(number)
 
 
 def percent(part: float | None, *, decimals: int = 1) -> str:
@@ -163,12 +178,15 @@ def _with_unit(text: str, unit: str) -> str:
 
 
 def _place(u: float) -> int:
-    """Power of ten of the last digit that is shown."""
-    exponent = Decimal(u).adjusted()
-    # 0.0996 rounds to 0.10: the digit kept moves with it
-    if Decimal(u).quantize(Decimal(1).scaleb(exponent - 1), ROUND_HALF_EVEN).adjusted() > exponent:
-        exponent += 1
-    return exponent - 1
+    """Power of ten of the last digit that is shown of an uncertainty."""
+    return _first_place(u, 2) - 1
+
+
+def _first_place(size: float, digits: int) -> int:
+    """Power of ten of the first digit of a number rounded to so many: that of 0.0996 to two is −1, since it rounds to 0.10."""
+    exact = Decimal(size)
+    exponent = exact.adjusted()
+    return exact.quantize(Decimal(1).scaleb(exponent - digits + 1), ROUND_HALF_EVEN).adjusted()
 
 
 def _at(value: float, place: int) -> str:
@@ -181,9 +199,10 @@ def _signed(text: str) -> str:
 
 def _power(size: float) -> int:
     """Power of ten to take out: none from a thousandth to a hundred thousand."""
-    if size == 0.0 or not math.isfinite(size) or PLAIN_FROM <= size < PLAIN_TO:
+    if size == 0.0 or not math.isfinite(size):
         return 0
-    return math.floor(math.log10(size))
+    exponent = Decimal(size).adjusted()
+    return 0 if PLAIN_FROM_EXPONENT <= exponent < PLAIN_TO_EXPONENT else exponent
 
 
 def _raised(power: int) -> str:

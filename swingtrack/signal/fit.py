@@ -83,7 +83,7 @@ def fit_swing(
     facing = law is not None and law.name == "knife-edge"
     coordinate = _within(find_coordinate(data, view, facing=facing), settings)
     line = find_line(coordinate.t, coordinate.y, expected_modes)
-    opening = open_fit(coordinate, line.hz, law, settings)
+    opening = open_fit(coordinate, line, law, settings)
     _check_significance(opening.fitted)
     choices = Choices(settings.damping, settings.most_modes, settings.view_shape, settings.outlier_limit)
     fitted = _finish(choose_terms(opening.fitted, choices), settings)

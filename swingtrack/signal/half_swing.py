@@ -25,8 +25,9 @@ from numpy.polynomial import chebyshev
 from swingtrack.records import Floats
 from swingtrack.signal.restoring import Restoring
 
-# Chebyshev terms in time: a cosine over half a turn needs 16 for 1e-13; the rest is for waveforms far from one.
-TIME_TERMS = 26
+# Chebyshev terms in time: a cosine over half a turn needs 16 for 1e-13; a wide bifilar at 45°
+# needs the rest for 1e-10.
+TIME_TERMS = 32
 NEWTON_STEPS = 30
 # Order of the derivatives: to the start amplitude, then to the four dimensionless parameters.
 SHAPE_NAMES = ("zeta", "beta", "dry", "shape")

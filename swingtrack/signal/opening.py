@@ -7,7 +7,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from swingtrack.errors import NothingToMeasure
-from swingtrack.records import SwingLaw
+from swingtrack.records import Floats, SwingLaw
 from swingtrack.signal import priors
 from swingtrack.signal.choose import all_damping, first_model
 from swingtrack.signal.coordinate import Coordinate
@@ -15,6 +15,7 @@ from swingtrack.signal.fitting import Fitted, Samples, fit_robustly
 from swingtrack.signal.free_part import find_free_part
 from swingtrack.signal.model import SwingModel, blank_values
 from swingtrack.signal.priors import Knowledge, gather
+from swingtrack.signal.search import Line, without_lines
 from swingtrack.signal.settings import FitSettings
 from swingtrack.signal.span import settle_span
 from swingtrack.signal.start import StartValues, start_values
@@ -30,15 +31,15 @@ class Opening:
     knowledge: Knowledge
 
 
-def open_fit(coordinate: Coordinate, hz: float, law: SwingLaw | None, settings: FitSettings) -> Opening:
-    """Find the free part about the line at `hz` and fit the plainest exact model over it.
+def open_fit(coordinate: Coordinate, line: Line, law: SwingLaw | None, settings: FitSettings) -> Opening:
+    """Find the free part about the swing's line and fit the plainest exact model over it.
 
     Raises
     ------
     NothingToMeasure
         If no part swings freely, or no motion fits.
     """
-    windows = fit_windows(coordinate.t, coordinate.y, hz)
+    windows = fit_windows(coordinate.t, without_lines(coordinate.t, coordinate.y, line.larger_hz), line.hz)
     span = _free_span(coordinate, windows, settings)
     inside = _between(windows, span)
     if np.isfinite(inside.amplitude).sum() < 3:
@@ -56,7 +57,7 @@ def open_fit(coordinate: Coordinate, hz: float, law: SwingLaw | None, settings: 
 
     fitted = fit_on(first_model(model, settings.damping, knowledge.free), span)
     if fitted is not None and settings.trim:
-        fitted, span = settle_span(coordinate.t, coordinate.y, span, fitted, fit_on)
+        fitted, span = settle_span(_record(coordinate), span, fitted, fit_on)
     if fitted is not None and settings.damping is not None and len(settings.damping) > 1:
         fitted = fit_on(all_damping(fitted.model, settings.damping), span)
     if fitted is None:
@@ -74,6 +75,12 @@ def samples_of(coordinate: Coordinate, span: tuple[float, float]) -> Samples:
     return Samples(
         coordinate.t[inside] - span[0], coordinate.y[inside], weight, np.ones(int(inside.sum()), bool)
     )
+
+
+def _record(coordinate: Coordinate) -> tuple[Floats, Floats, Floats]:
+    """Times, values and weights of unit mean square over the whole record."""
+    weight = 1 / coordinate.u
+    return coordinate.t, coordinate.y, weight / np.sqrt(np.mean(weight**2))
 
 
 def _free_span(coordinate: Coordinate, windows: Windows, settings: FitSettings) -> tuple[float, float]:

@@ -5,26 +5,31 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from swingtrack.errors import NothingToMeasure
 from swingtrack.records import ExpectedMode, Floats
-from swingtrack.signal.spectrum import amplitude_spectrum, background, refine_peak
+from swingtrack.signal.spectrum import Spectrum, amplitude_spectrum, background, refine_peak
 
 # A line has to top the running median of the spectrum by this factor in amplitude. White noise of 20 000 samples
 # tops it by 5.2 once in a thousand records; coloured noise by little more, as the median runs with its colour.
 LEAST_HEIGHT = 6.5
 # The record has to hold this many swings before anything is said of a period.
 FEWEST_CYCLES = 1.5
-# Within this share of the highest line the one nearest to what the rig predicts is taken for the swing.
-RIVAL_SHARE = 0.5
+# A line that the rig predicts for another motion gives way to any other of at least this share of its height.
+RIVAL_SHARE = 0.2
+# Harmonics of a line are no motion of their own; lines lower or higher than these shares of it are looked past.
+NEIGHBOURS = (0.3, 3.5)
+LINE_BINS = 3.0  # a tapered line is four bins wide at its foot
 
 
 @dataclass(frozen=True)
 class Line:
-    """The swing's line in the spectrum: frequency, and height over the background."""
+    """The swing's line in the spectrum: frequency, height over the background, and larger lines that are not it."""
 
     hz: float
     height: float
+    larger_hz: tuple[float, ...] = ()
 
 
 def find_line(t: Floats, y: Floats, expected: tuple[ExpectedMode, ...] = ()) -> Line:
@@ -61,14 +66,46 @@ def find_line(t: Floats, y: Floats, expected: tuple[ExpectedMode, ...] = ()) -> 
         )
     order = tops[np.argsort(-amplitude[tops])]
     best = int(order[0])
-    for top in order:
-        if amplitude[top] < RIVAL_SHARE * amplitude[best]:
-            break
-        if not _is_expected(float(found.hz[top]), found.resolution_hz, expected):
-            best = int(top)
-            break
-    hz = refine_peak(t, z, float(found.hz[best]), found.resolution_hz)
-    return Line(hz, float(height[best]))
+    larger: tuple[float, ...] = ()
+    if _is_expected(float(found.hz[best]), found.resolution_hz, expected):
+        other = _other_line(found, order, amplitude, expected)
+        if other is not None:
+            larger = (refine_peak(t, z, float(found.hz[best]), found.resolution_hz),)
+            best = other
+    hz = refine_peak(t, without_lines(t, z, larger), float(found.hz[best]), found.resolution_hz)
+    return Line(hz, float(height[best]), larger)
+
+
+def _other_line(
+    found: Spectrum, order: NDArray[np.intp], amplitude: Floats, expected: tuple[ExpectedMode, ...]
+) -> int | None:
+    """The next line that is neither predicted for another motion, nor a foot or harmonic of the highest."""
+    top_hz = float(found.hz[order[0]])
+    for top in order[1:]:
+        if amplitude[top] < RIVAL_SHARE * amplitude[order[0]]:
+            return None
+        hz = float(found.hz[top])
+        ratio = hz / top_hz
+        foot = abs(hz - top_hz) < LINE_BINS * found.resolution_hz
+        harmonic = round(ratio) > 1 and abs(hz - round(ratio) * top_hz) < LINE_BINS * found.resolution_hz
+        near = NEIGHBOURS[0] < ratio < NEIGHBOURS[1]
+        if near and not foot and not harmonic and not _is_expected(hz, found.resolution_hz, expected):
+            return int(top)
+    return None
+
+
+def without_lines(t: Floats, y: Floats, lines_hz: tuple[float, ...]) -> Floats:
+    """`y` less the sinusoids at these frequencies, each free to fade as a parabola over the record."""
+    if not lines_hz:
+        return y
+    u = 2 * (t - t[0]) / (t[-1] - t[0]) - 1
+    columns = [np.ones_like(t)]
+    for hz in lines_hz:
+        turn = 2 * np.pi * hz * t
+        columns += [wave * u**power for wave in (np.cos(turn), np.sin(turn)) for power in (0, 1, 2)]
+    design = np.column_stack(columns)
+    found, *_ = np.linalg.lstsq(design, y, rcond=None)
+    return np.asarray(y - design[:, 1:] @ found[1:])
 
 
 def _is_expected(hz: float, resolution_hz: float, expected: tuple[ExpectedMode, ...]) -> bool:

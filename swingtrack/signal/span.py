@@ -53,8 +53,7 @@ def shift_origin(model: SwingModel, by: float) -> SwingModel:
 
 
 def settle_span(
-    t: Floats,
-    y: Floats,
+    record: tuple[Floats, Floats, Floats],
     span: tuple[float, float],
     fitted: Fitted,
     refit: Callable[[SwingModel, tuple[float, float]], Fitted | None],
@@ -63,7 +62,7 @@ def settle_span(
 
     Parameters
     ----------
-    t, y : (n,) float
+    record : t, y, weight, each (n,) float
         The whole record.
     span : (float, float)
         Start and end of the part fitted, s; `fitted` counts its time from the start.
@@ -72,7 +71,7 @@ def settle_span(
     """
     seen = {span}
     for _ in range(ROUNDS):
-        wider = _next_span(t, y, span, fitted)
+        wider = _next_span(record, span, fitted)
         if wider is None or wider in seen:
             break
         seen.add(wider)
@@ -83,7 +82,10 @@ def settle_span(
     return fitted, span
 
 
-def _next_span(t: Floats, y: Floats, span: tuple[float, float], fitted: Fitted) -> tuple[float, float] | None:
+def _next_span(
+    record: tuple[Floats, Floats, Floats], span: tuple[float, float], fitted: Fitted
+) -> tuple[float, float] | None:
+    t, y, weight = record
     period = 2 * np.pi / fitted.model.values["omega0"]
     length = span[1] - span[0]
     first = max(float(t[0]), span[0] - REACH * length - period)
@@ -94,7 +96,7 @@ def _next_span(t: Floats, y: Floats, span: tuple[float, float], fitted: Fitted) 
     motion = model.motion(at - first)
     if not motion.valid:
         return None
-    left = np.abs(y[inside] - model.seen(at - first))
+    left = np.abs(y[inside] - model.seen(at - first)) * weight[inside]
     width = max(period / 4, SAMPLES_A_BIN * float(np.median(np.diff(t))))
     bins = np.floor((at - span[0]) / width).astype(int)
     numbers, starts = np.unique(bins, return_index=True)

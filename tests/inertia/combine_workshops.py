@@ -11,7 +11,7 @@ import numpy as np
 
 from swingtrack.inertia.combine import Run
 from swingtrack.inertia.suspension import model_of
-from swingtrack.records import AddedWeight, Article, Quantity, Rig, Suspension
+from swingtrack.records import Article, Quantity, Rig, Suspension
 
 PERIOD_RELATIVE_U = 1e-4
 CLOCK_RELATIVE_U = 2e-5
@@ -35,7 +35,9 @@ class Workshop:
     def period(self, true_s: float, clock: float, *, relative_u: float = PERIOD_RELATIVE_U) -> Quantity:
         """A period as a clip gives it, on a clock that runs off by `clock`."""
         error = relative_u * self.rng.standard_normal()
-        return Quantity(true_s * (1.0 + clock + error), true_s * math.hypot(relative_u, CLOCK_RELATIVE_U), "s")
+        return Quantity(
+            true_s * (1.0 + clock + error), true_s * math.hypot(relative_u, CLOCK_RELATIVE_U), "s"
+        )
 
     def clock(self) -> float:
         return float(CLOCK_RELATIVE_U * math.sqrt(3.0) * self.rng.uniform(-1.0, 1.0))
@@ -83,7 +85,9 @@ def trifilar_bench(shop: Workshop, *, tape: float = 0.5e-3) -> Bench:
 
 def torsion_bench(shop: Workshop) -> Bench:
     true = {"stiffness": shop.rng.uniform(0.01, 0.1)}
-    written = {"stiffness": shop.measure("stiffness", true["stiffness"], "N m/rad", limits=0.02 * true["stiffness"])}
+    written = {
+        "stiffness": shop.measure("stiffness", true["stiffness"], "N m/rad", limits=0.02 * true["stiffness"])
+    }
     return Bench(shop, "torsion-wire", true, written, shop.clock())
 
 
@@ -102,9 +106,3 @@ def article(shop: Workshop, name: str, mass: float, *, scale: float = 0.5e-3, **
 def true_sum(weights: list[tuple[float, float]]) -> tuple[float, float]:
     """Mass and moment of point weights (mass, distance)."""
     return sum(m for m, _ in weights), sum(m * d * d for m, d in weights)
-
-
-def written_weight(shop: Workshop, name: str, mass: float, distance: float, *, tape: float = 0.2e-3) -> AddedWeight:
-    """A weight at a distance, each measured once under its name."""
-    m = shop.measure(f"weight {name}", mass, "kg", limits=0.05e-3)
-    return AddedWeight(m, shop.measure(f"distance {name} at {distance:.4f}", distance, "m", limits=tape))

@@ -38,15 +38,28 @@ def steps(
     """Runs with a pair of weights at each distance; every length is written down `tape` times too long."""
     true = TRUE[kind] | (strings or {})
     written = {
-        key: q(value * (tape if key.split("_")[-1] in ("length", "spacing", "radius", "stiffness") else 1.0), 1e-3 * value, "")
+        key: q(
+            value * (tape if key.split("_")[-1] in ("length", "spacing", "radius", "stiffness") else 1.0),
+            1e-3 * value,
+            "",
+        )
         for key, value in true.items()
         if key != "gravity"
     }
     moment_of_its_own = None if own is None else q(own, 1e-6, "kg m^2")
     runs = []
     for number, distance in enumerate(distances):
-        added = () if distance is None else tuple(
-            AddedWeight(q(PAIR, 1e-5, "kg", f"200 g {side}"), q(distance, 1e-4, "m", f"{distance} {side}"), moment_of_its_own) for side in "LR"
+        added = (
+            ()
+            if distance is None
+            else tuple(
+                AddedWeight(
+                    q(PAIR, 1e-5, "kg", f"200 g {side}"),
+                    q(distance, 1e-4, "m", f"{distance} {side}"),
+                    moment_of_its_own,
+                )
+                for side in "LR"
+            )
         )
         x = {**true, "mass": MASS + PAIR * len(added)}
         moment = MOMENT + (2 * PAIR * distance**2 + 2 * (own or 0.0) if distance else 0.0)
@@ -67,12 +80,22 @@ def test_geometry_does_not_enter(kind: str, tape: float) -> None:
     if kind == "torsion-wire":
         constant = t["stiffness"]
     elif kind == "trifilar":
-        constant = t["gravity"] * t["upper_radius"] ** 2 / t["length"]  # I = m g R² T²/(4π² L), parallel strings
+        constant = (
+            t["gravity"] * t["upper_radius"] ** 2 / t["length"]
+        )  # I = m g R² T²/(4π² L), parallel strings
     else:
         a, b = t["upper_spacing"] / 2, t["lower_spacing"] / 2
-        constant = t["gravity"] * a * b / math.sqrt(t["length"] ** 2 - (a - b) ** 2)  # I = m g a b T²/(4π² h0)
+        constant = (
+            t["gravity"] * a * b / math.sqrt(t["length"] ** 2 - (a - b) ** 2)
+        )  # I = m g a b T²/(4π² h0)
     assert result.by_products[0].quantity.value == pytest.approx(constant, rel=1e-9)
-    assert not {line.input for line in result.budget} & {"length", "upper_spacing", "gravity", "stiffness", "upper_radius"}
+    assert not {line.input for line in result.budget} & {
+        "length",
+        "upper_spacing",
+        "gravity",
+        "stiffness",
+        "upper_radius",
+    }
 
 
 def test_strings_mass_and_twist_are_allowed_for() -> None:
@@ -127,7 +150,9 @@ def test_small_steps_and_lopsided_weights_are_doubted() -> None:
     assert [d.code for d in small.doubts] == ["added-weights-small"]
     runs = steps(tape=1.0)
     article = runs[2].rig.article
-    lopsided = replace(article, added=(article.added[0], replace(article.added[1], distance=q(0.1, 1e-4, "m"))))
+    lopsided = replace(
+        article, added=(article.added[0], replace(article.added[1], distance=q(0.1, 1e-4, "m")))
+    )
     result = fit_added_weights([*runs[:2], replace(runs[2], rig=replace(runs[2].rig, article=lopsided))])
     assert "added-weights-unbalanced" in [d.code for d in result.doubts]
 
@@ -163,7 +188,10 @@ def test_weights_that_make_it_faster_are_refused() -> None:
 
 def test_edge_is_refused() -> None:
     runs = [
-        replace(run, rig=replace(run.rig, suspension=Suspension("knife-edge", {"pivot_to_centre": q(0.3, 1e-3, "m")})))
+        replace(
+            run,
+            rig=replace(run.rig, suspension=Suspension("knife-edge", {"pivot_to_centre": q(0.3, 1e-3, "m")})),
+        )
         for run in steps()
     ]
     with pytest.raises(BadInput, match="knife-edge"):

@@ -12,7 +12,8 @@ import pytest
 
 from swingtrack.errors import BadInput
 from swingtrack.inertia.budget import propagate
-from swingtrack.inertia.combine_adjust import adjust, check_by_draws, derive, draw_unknowns
+from swingtrack.inertia.combine_adjust import adjust, derive
+from swingtrack.inertia.combine_draws import check_by_draws, draw_unknowns
 from swingtrack.records import Quantity
 
 # K. Pearson's points with D. York's weights (Canadian Journal of Physics 44 (1966) 1079), the usual test of straight
@@ -54,7 +55,9 @@ def test_line_against_brute_force() -> None:
     def merit(p: Any) -> float:  # chi² with every point moved to where the line is nearest, in closed form
         return float(np.sum((y - p[0] - p[1] * x) ** 2 / (v2 + p[1] ** 2 * u2)))
 
-    best = minimize(merit, [5.0, -0.4], method="Nelder-Mead", options={"xatol": 1e-10, "fatol": 1e-12, "maxiter": 4000})
+    best = minimize(
+        merit, [5.0, -0.4], method="Nelder-Mead", options={"xatol": 1e-10, "fatol": 1e-12, "maxiter": 4000}
+    )
     fitted = adjust(line, pearson(), [5.0, -0.4])
     assert fitted.values == pytest.approx(best.x, rel=1e-6)
     assert fitted.chi2 == pytest.approx(best.fun, rel=1e-9)
@@ -103,24 +106,34 @@ def test_one_condition_is_the_law_of_propagation() -> None:
     assert found.quantity.u == pytest.approx(wanted.quantity.u, rel=1e-10)
     assert found.quantity.dof == pytest.approx(wanted.quantity.dof, rel=1e-6)
     assert found.k == pytest.approx(wanted.k)
-    assert [line.share for line in found.lines] == pytest.approx([line.share for line in wanted.lines], rel=1e-8)
+    assert [line.share for line in found.lines] == pytest.approx(
+        [line.share for line in wanted.lines], rel=1e-8
+    )
 
 
 def test_sensitivities_are_those_of_a_new_fit() -> None:
     """By finite differences of whole fits, at points that lie on a line (off it the weights change as well)."""
     inputs = {
-        name: replace(quantity, value=5.5 - 0.5 * PEARSON_X[int(name[1])] if name[0] == "y" else quantity.value)
+        name: replace(
+            quantity, value=5.5 - 0.5 * PEARSON_X[int(name[1])] if name[0] == "y" else quantity.value
+        )
         for name, quantity in pearson().items()
     }
     fitted = adjust(line, inputs, [6.0, -0.4])
     for name in ("x4", "y9"):
         step = 1e-3 * inputs[name].u
         up, down = (
-            adjust(line, {**inputs, name: replace(inputs[name], value=inputs[name].value + sign * step)}, [6.0, -0.4])
+            adjust(
+                line,
+                {**inputs, name: replace(inputs[name], value=inputs[name].value + sign * step)},
+                [6.0, -0.4],
+            )
             for sign in (1, -1)
         )
         column = list(inputs).index(name)
-        assert fitted.sensitivity[:, column] == pytest.approx((up.values - down.values) / (2 * step), rel=1e-4)
+        assert fitted.sensitivity[:, column] == pytest.approx(
+            (up.values - down.values) / (2 * step), rel=1e-4
+        )
 
 
 def test_draws_spread_as_the_covariance_says() -> None:
@@ -128,7 +141,9 @@ def test_draws_spread_as_the_covariance_says() -> None:
     p, _ = draw_unknowns(fitted, draws=20_000)
     assert np.std(p[0]) == pytest.approx(math.sqrt(fitted.covariance[0, 0]), rel=0.05)
     result = derive(fitted, lambda p, x: p[0] + 2.0 * p[1], "1")
-    assert check_by_draws(fitted, lambda p, x: p[0] + 2.0 * p[1], result.quantity).u == pytest.approx(result.quantity.u, rel=0.05)
+    assert check_by_draws(fitted, lambda p, x: p[0] + 2.0 * p[1], result.quantity).u == pytest.approx(
+        result.quantity.u, rel=0.05
+    )
 
 
 def test_exact_inputs_are_allowed() -> None:

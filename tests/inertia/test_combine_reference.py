@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import replace
 
 import pytest
@@ -47,6 +48,9 @@ def test_published_torsion_pendulum_with_cradle(stiffness: float) -> None:
     assert result.moment.value == pytest.approx(0.19925, abs=1e-5)
     lbf_ft = 0.45359237 * 9.80665 * 0.3048
     assert result.by_products[0].quantity.value * stiffness / lbf_ft == pytest.approx(0.38213, abs=1e-5)
+    # stated cradle 0.014 slug ft², recomputed 0.01417
+    cradle = result.by_products[0].quantity.value * stiffness * 1.21**2 / (4 * math.pi**2)
+    assert cradle / SLUG_FT2 == pytest.approx(0.01417, abs=1e-5)
     assert next(line for line in result.budget if line.input == "stiffness").share < 1e-12
 
 
@@ -58,7 +62,9 @@ def hung(name: str, mass: float, moment: float, *, known: Quantity | None = None
     """On the true bench, written down with a tape measure that errs."""
     period = model_of("bifilar").period({**TRUE, "mass": mass}, moment)
     article = Article(name, q(mass, 1e-4, "kg"), expected_moment=known)
-    return Run(name, Rig(article, Suspension("bifilar", TAPE), gravity=q(9.81, 0.01, "m/s^2")), q(period, 1e-4, "s"))
+    return Run(
+        name, Rig(article, Suspension("bifilar", TAPE), gravity=q(9.81, 0.01, "m/s^2")), q(period, 1e-4, "s")
+    )
 
 
 def test_wrong_tape_measure_cancels_on_strings() -> None:

@@ -20,7 +20,9 @@ def q(value: float, u: float, unit: str, text: str = "") -> Quantity:
 
 
 BENCH = {"length": q(1.2, 5e-4, "m"), "upper_spacing": q(0.3, 3e-4, "m")}
-RIG = Rig(Article("paddle", q(0.912, 3e-4, "kg")), Suspension("bifilar", BENCH), gravity=q(9.81, 1e-4, "m/s^2"))
+RIG = Rig(
+    Article("paddle", q(0.912, 3e-4, "kg")), Suspension("bifilar", BENCH), gravity=q(9.81, 1e-4, "m/s^2")
+)
 
 
 def run(name: str, period: float, u: float = 1e-3, *, rig: Rig = RIG, clock: float = 0.0) -> Run:
@@ -78,7 +80,9 @@ def test_scatter_over_the_claim_is_added() -> None:
     result = combine_repeats([run(f"run {n}", float(t), 1e-4) for n, t in enumerate(periods)])
     # equal claims: the added variance is that of the sample less the claim (Mandel and Paule in closed form)
     sample = float(np.var(2 * np.log(periods), ddof=1))
-    assert result.consistency.extra_relative_u == pytest.approx(math.sqrt(sample - (2e-4 / 1.5) ** 2), rel=0.01)
+    assert result.consistency.extra_relative_u == pytest.approx(
+        math.sqrt(sample - (2e-4 / 1.5) ** 2), rel=0.01
+    )
     (line,) = (line for line in result.budget if line.input == "scatter between runs")
     assert line.contribution / result.moment.value == pytest.approx(math.sqrt(sample / 5), rel=0.02)
     assert line.dof == 4
@@ -106,7 +110,9 @@ def test_order_of_the_runs_does_not_matter() -> None:
 
 
 def test_air_is_taken_off_as_in_a_single_run() -> None:
-    foam = replace(RIG, air=Air("plate", {"width": q(0.4, 0, "m"), "height": q(0.2, 0, "m")}, face="broadside"))
+    foam = replace(
+        RIG, air=Air("plate", {"width": q(0.4, 0, "m"), "height": q(0.2, 0, "m")}, face="broadside")
+    )
     alone = moment_of_inertia(foam, q(1.5, 1e-3, "s"), facts=SwingFacts(clock_relative_u=0.0))
     result = combine_repeats([run("a", 1.5, rig=foam), run("b", 1.5, rig=foam)])
     assert result.moment.value == pytest.approx(alone.moment.value)
@@ -127,7 +133,10 @@ def test_stored_moment_that_differs_is_doubted() -> None:
         ([run("a", 1.5), run("a", 1.5)], "more than one run"),
         ([run("a", 1.5), run("b", -1.5)], "period over zero"),
         ([run("a", 1.5), run("b", math.nan)], "period over zero"),
-        ([run("a", 1.5), run("b", 1.5, rig=replace(RIG, article=Article("oar", RIG.article.mass)))], "the same article"),
+        (
+            [run("a", 1.5), run("b", 1.5, rig=replace(RIG, article=Article("oar", RIG.article.mass)))],
+            "the same article",
+        ),
         ([run("a", 1.5), replace(run("b", 1.5), clock_relative_u=0.1)], "clock"),
     ],
 )

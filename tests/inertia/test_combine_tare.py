@@ -22,7 +22,9 @@ BENCH = {"length": q(1.2, 5e-4, "m"), "upper_spacing": q(0.3, 3e-4, "m")}
 G = q(9.81, 1e-3, "m/s^2")
 
 
-def hung(name: str, mass: float, moment: float, *, kind: str = "bifilar", bench: dict[str, Quantity] = BENCH) -> Run:
+def hung(
+    name: str, mass: float, moment: float, *, kind: str = "bifilar", bench: dict[str, Quantity] = BENCH
+) -> Run:
     """A run with the very period that the stated dimensions give."""
     rig = Rig(Article(name, q(mass, 1e-4, "kg")), Suspension(kind, bench), gravity=G)
     x = {key: quantity.value for key, quantity in model_of(kind).inputs(rig).items()}
@@ -73,7 +75,15 @@ def test_cradle_on_a_knife_edge() -> None:
     both = about_edge - (article + cradle) * arm**2
     result = subtract_tare(
         [hung("both", 1.1, both, kind="knife-edge", bench={"pivot_to_centre": q(arm, 1e-4, "m")})],
-        [hung("cradle", 0.2, cradle_own, kind="knife-edge", bench={"pivot_to_centre": q(l_cradle, 1e-4, "m")})],
+        [
+            hung(
+                "cradle",
+                0.2,
+                cradle_own,
+                kind="knife-edge",
+                bench={"pivot_to_centre": q(l_cradle, 1e-4, "m")},
+            )
+        ],
     )
     assert result.moment.value == pytest.approx(own, rel=1e-10)
 
@@ -109,7 +119,15 @@ def test_heavy_cradle_is_doubted() -> None:
         ([hung("both", 1.2, 0.01)], [hung("cradle", 0.3, 0.02)], "larger one"),
         (
             [hung("both", 1.2, 0.03)],
-            [hung("cradle", 0.3, 0.01, kind="trifilar", bench={"length": BENCH["length"], "upper_radius": q(0.15, 0, "m")})],
+            [
+                hung(
+                    "cradle",
+                    0.3,
+                    0.01,
+                    kind="trifilar",
+                    bench={"length": BENCH["length"], "upper_radius": q(0.15, 0, "m")},
+                )
+            ],
             "the same suspension",
         ),
     ],

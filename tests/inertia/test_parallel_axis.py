@@ -10,7 +10,12 @@ import pytest
 
 from swingtrack.errors import BadInput
 from swingtrack.inertia.combine import Run
-from swingtrack.inertia.parallel_axis import fit_parallel_edges, shift_from_centre, shift_tensor, shift_to_centre
+from swingtrack.inertia.parallel_axis import (
+    fit_parallel_edges,
+    shift_from_centre,
+    shift_tensor,
+    shift_to_centre,
+)
 from swingtrack.inertia.solids_shapes import SHAPES
 from swingtrack.records import Article, Quantity, Rig, Suspension
 
@@ -43,11 +48,17 @@ def test_tensor_of_points_moves_with_them() -> None:
     masses, places = rng.uniform(0.1, 1.0, 12), rng.normal(size=(12, 3))
 
     def tensor(r: np.ndarray) -> np.ndarray:
-        return np.einsum("i,ijk->jk", masses, np.einsum("ij,ij->i", r, r)[:, None, None] * np.eye(3) - r[:, :, None] * r[:, None])
+        return np.einsum(
+            "i,ijk->jk",
+            masses,
+            np.einsum("ij,ij->i", r, r)[:, None, None] * np.eye(3) - r[:, :, None] * r[:, None],
+        )
 
     centred = places - masses @ places / masses.sum()
     offset = np.array([0.3, -0.2, 0.5])
-    assert shift_tensor(tensor(centred), float(masses.sum()), offset) == pytest.approx(tensor(centred - offset))
+    assert shift_tensor(tensor(centred), float(masses.sum()), offset) == pytest.approx(
+        tensor(centred - offset)
+    )
 
 
 K, MASS, G = 0.29, 1.3, 9.8123  # k and g of the two-pivot check (round trip l1 = 0.5, l2 = 0.2)

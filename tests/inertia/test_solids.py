@@ -34,7 +34,11 @@ def solid(name: str, kind: str, *, place: tuple[float, float, float] = (0, 0, 0)
     more = {k: v for k, v in given.items() if k in ("hole", "of", "turns", "material")}
     mass = exact(given["mass"], "kg") if "mass" in given else None  # type: ignore[arg-type]
     density = exact(given["density"], "kg/m^3") if "density" in given else None  # type: ignore[arg-type]
-    sizes = {k: exact(v) for k, v in given.items() if isinstance(v, int | float) and k not in ("mass", "density", "hole")}
+    sizes = {
+        k: exact(v)
+        for k, v in given.items()
+        if isinstance(v, int | float) and k not in ("mass", "density", "hole")
+    }
     return Part(name, kind, sizes, at(*place), mass=mass, density=density, **more)  # type: ignore[arg-type]
 
 
@@ -42,8 +46,8 @@ def matrix(result: SolidResult) -> np.ndarray:
     return np.array([[q.value for q in row] for row in result.matrix])
 
 
-def built(*parts: Part, axis: Axis = Axis()) -> SolidResult:
-    return assemble(Assembly("paddle", parts, axis))
+def built(*parts: Part, axis: Axis | None = None) -> SolidResult:
+    return assemble(Assembly("paddle", parts, axis or Axis()))
 
 
 def test_steel_bar_of_a_published_torsion_pendulum() -> None:
@@ -61,7 +65,9 @@ def test_steel_bar_of_a_published_torsion_pendulum() -> None:
 
 def test_rod_of_a_published_bifilar_study() -> None:
     # School study of a bifilar rod (2021): k² = 0.1958²/12 + 0.00339²/4 = 3.1977e-3 m²
-    result = built(solid("rod", "cylinder", diameter=2 * 0.00339, height=0.1958, mass=1.0), axis=Axis((1.0, 0.0, 0.0)))
+    result = built(
+        solid("rod", "cylinder", diameter=2 * 0.00339, height=0.1958, mass=1.0), axis=Axis((1.0, 0.0, 0.0))
+    )
     assert result.moment.value == pytest.approx(3.1977e-3, abs=5e-8)
 
 
@@ -115,7 +121,11 @@ def test_turns_are_made_in_the_order_written() -> None:
 
 def test_turn_is_counter_clockwise() -> None:
     # A cone standing on z tipped by +90° about x points to −y: its centre of mass lies there (right-hand rule).
-    result = built(solid("cone", "cone", diameter=0.2, height=0.4, mass=1.0, turns=(Turn("x", exact(math.pi / 2, "rad")),)))
+    result = built(
+        solid(
+            "cone", "cone", diameter=0.2, height=0.4, mass=1.0, turns=(Turn("x", exact(math.pi / 2, "rad")),)
+        )
+    )
     assert [q.value for q in result.centre] == pytest.approx([0.0, -0.1, 0.0], abs=1e-15)
 
 
@@ -133,7 +143,10 @@ def test_products_of_inertia_have_the_sign_of_the_matrix() -> None:
 
 
 def test_ready_made_body_keeps_its_moments() -> None:
-    moments = {f"moment_{axis}": exact(value, "kg m^2") for axis, value in zip("xyz", (1e-3, 2e-3, 2.5e-3), strict=True)}
+    moments = {
+        f"moment_{axis}": exact(value, "kg m^2")
+        for axis, value in zip("xyz", (1e-3, 2e-3, 2.5e-3), strict=True)
+    }
     motor = Part("motor", "body", moments, at(0.3, 0, 0), mass=exact(0.4, "kg"))
     assert np.diag(matrix(built(motor))) == pytest.approx([1e-3, 2e-3, 2.5e-3])
 
@@ -147,9 +160,14 @@ def test_turning_and_moving_the_whole_changes_nothing_of_its_own(
         turns = tuple(Turn(axis, exact(angle, "rad")) for axis, angle in zip("xyz", angles, strict=True))
         return replace(part, turns=turns, at=at(*move))
 
-    parts = (solid("plate", "plate", length=0.5, width=0.2, mass=0.3), solid("rod", "rod", length=1.1, mass=0.2))
+    parts = (
+        solid("plate", "plate", length=0.5, width=0.2, mass=0.3),
+        solid("rod", "rod", length=1.1, mass=0.2),
+    )
     first, second = built(*parts), built(*(moved(part) for part in parts))
-    assert [m for m, _ in second.principal] == pytest.approx([m for m, _ in first.principal], rel=1e-9, abs=1e-12)
+    assert [m for m, _ in second.principal] == pytest.approx(
+        [m for m, _ in first.principal], rel=1e-9, abs=1e-12
+    )
     assert [q.value for q in second.centre] == pytest.approx(list(move), abs=1e-12)
 
 
@@ -164,12 +182,18 @@ def test_moment_table_adds_up_and_matches_the_parallel_axis_rule() -> None:
     for part, line in zip((plate, ball), result.parts, strict=True):
         alone = built(part)
         offset = np.array([q.value for q in alone.centre]) - np.array([0.1, 0.2, 0.3])
-        assert line.moment == pytest.approx(float(n @ shift_tensor(matrix(alone), alone.mass.value, offset) @ n))
+        assert line.moment == pytest.approx(
+            float(n @ shift_tensor(matrix(alone), alone.mass.value, offset) @ n)
+        )
 
 
 def test_uncertainty_by_the_law_of_propagation() -> None:
     """Against GTC's uncertain numbers put through the tables' formula: block about z, density and all sides uncertain."""
-    sides = {"length": Quantity(0.4, 1e-3, "m"), "width": Quantity(0.1, 5e-4, "m"), "height": Quantity(0.06, 5e-4, "m")}
+    sides = {
+        "length": Quantity(0.4, 1e-3, "m"),
+        "width": Quantity(0.1, 5e-4, "m"),
+        "height": Quantity(0.06, 5e-4, "m"),
+    }
     density = Quantity(700.0, 20.0, "kg/m^3")
     part = Part("block", "block", sides, at(), density=density)
 
@@ -191,7 +215,13 @@ def test_one_material_is_one_density() -> None:
     """Ten parts of one board do not average its density out; ten parts of densities of their own do, as 1/√10."""
     density = Quantity(680.0, 68.0, "kg/m^3")
     parts = [
-        Part(f"slat {n}", "block", {"length": exact(0.1), "width": exact(0.1), "height": exact(0.1)}, at(n), density=density)
+        Part(
+            f"slat {n}",
+            "block",
+            {"length": exact(0.1), "width": exact(0.1), "height": exact(0.1)},
+            at(n),
+            density=density,
+        )
         for n in range(10)
     ]
     apart = built(*parts)
@@ -202,7 +232,10 @@ def test_one_material_is_one_density() -> None:
 
 def test_monte_carlo_stands_beside_and_agrees_where_it_is_linear() -> None:
     length = parse_quantity("1.200 m ± 1 mm", "length")
-    result = built(Part("rod", "rod", {"length": length}, at(), mass=parse_quantity("0.5 kg ± 1 g", "mass")), axis=Axis((1, 0, 0)))
+    result = built(
+        Part("rod", "rod", {"length": length}, at(), mass=parse_quantity("0.5 kg ± 1 g", "mass")),
+        axis=Axis((1, 0, 0)),
+    )
     assert result.monte_carlo.agrees
     assert result.monte_carlo.u == pytest.approx(result.moment.u, rel=0.02)
 
@@ -246,15 +279,27 @@ def test_hole_outside_its_matter_is_doubted() -> None:
         ([solid("a", "sphere", diameter=0.1, material="air")], "not in the table"),
         ([solid("a", "plate", length=0.1, width=0.1, density=100.0)], "no volume"),
         ([solid("a", "point", mass=1.0), solid("a", "point", mass=1.0)], "Two parts are called 'a'"),
-        ([solid("a", "point", mass=1.0), solid("h", "sphere", diameter=0.1, hole=True, of="b")], "which is not there"),
+        (
+            [solid("a", "point", mass=1.0), solid("h", "sphere", diameter=0.1, hole=True, of="b")],
+            "which is not there",
+        ),
         ([solid("a", "point", mass=1.0), solid("h", "sphere", diameter=0.1, hole=True, of="a")], "no volume"),
         (
-            [solid("a", "sphere", diameter=0.1, mass=1.0), solid("h", "sphere", diameter=0.2, hole=True, of="a")],
+            [
+                solid("a", "sphere", diameter=0.1, mass=1.0),
+                solid("h", "sphere", diameter=0.2, hole=True, of="a"),
+            ],
             "take away all of it",
         ),
-        ([solid("a", "sphere", diameter=0.1, mass=1.0), solid("h", "sphere", diameter=0.05, of="a")], "`of` beside"),
         (
-            [solid("a", "sphere", diameter=0.1, mass=1.0), solid("h", "sphere", diameter=0.05, hole=True, mass=2.0)],
+            [solid("a", "sphere", diameter=0.1, mass=1.0), solid("h", "sphere", diameter=0.05, of="a")],
+            "`of` beside",
+        ),
+        (
+            [
+                solid("a", "sphere", diameter=0.1, mass=1.0),
+                solid("h", "sphere", diameter=0.05, hole=True, mass=2.0),
+            ],
             "more matter than holes",
         ),
     ],

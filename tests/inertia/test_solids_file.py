@@ -85,7 +85,10 @@ def one(**keys: object) -> dict[str, object]:
         ({"part": []}, "part got"),
         (one(kind="cube"), r"kind = 'cube' is not known \(did you mean tube\?\)"),
         (one(kind="sphere", diameter="3 cm", mass="1 kg", colour="red"), "part 'a'.colour is not a key here"),
-        (one(kind="sphere", diametre="3 cm", mass="1 kg"), r"part 'a'.diametre is not a key here \(did you mean diameter\?\)"),
+        (
+            one(kind="sphere", diametre="3 cm", mass="1 kg"),
+            r"part 'a'.diametre is not a key here \(did you mean diameter\?\)",
+        ),
         (one(kind="sphere", mass="1 kg"), r"diameter is missing \(a sphere needs diameter\)"),
         (one(kind="sphere", diameter="3 cm", height="1 m", mass="1 kg"), "height is not a key of a sphere"),
         (one(kind="sphere", diameter="3 kg", mass="1 kg"), "not one of length"),
@@ -93,7 +96,10 @@ def one(**keys: object) -> dict[str, object]:
         (one(kind="sphere", diameter=3, mass="1 kg"), "not a text in quotes"),
         (one(kind="sphere", diameter="3 cm", mass="1 kg", density="1 g/cm^3"), "has both mass and density"),
         (one(kind="sphere", diameter="3 cm", mass="1 kg", at=["1 mm", "2 mm"]), r"at\[2\] is missing"),
-        (one(kind="sphere", diameter="3 cm", mass="1 kg", turn=["90 deg"]), r"turn\[0\]: '90 deg' is not a turn"),
+        (
+            one(kind="sphere", diameter="3 cm", mass="1 kg", turn=["90 deg"]),
+            r"turn\[0\]: '90 deg' is not a turn",
+        ),
         (one(kind="sphere", diameter="3 cm", mass="1 kg", turn=["x 90 mm"]), "not one of angle"),
         (
             one(kind="tube", outer_diameter="3 cm", inner_diameter="4 cm", height="1 m", mass="1 kg"),

@@ -76,7 +76,9 @@ def test_published_formula(kind: str) -> None:
 
 def test_frustum_along_its_axis() -> None:
     # The published form (3/10) m (R₁⁵ − R₂⁵)/(R₁³ − R₂³); across the axis: filled with points below.
-    assert squared_gyrations("frustum").zz == pytest.approx(0.3 * (0.25**5 - 0.1**5) / (0.25**3 - 0.1**3), rel=1e-14)
+    assert squared_gyrations("frustum").zz == pytest.approx(
+        0.3 * (0.25**5 - 0.1**5) / (0.25**3 - 0.1**3), rel=1e-14
+    )
 
 
 def test_centres_of_mass_over_the_base() -> None:
@@ -122,7 +124,9 @@ SOLID = [kind for kind, shape in SHAPES.items() if not shape.thin]
 @pytest.mark.parametrize("kind", SOLID)
 def test_solid_filled_with_points(kind: str) -> None:
     """Volume, centre and moments by 500 000 evenly spread points (a Kronecker lattice), good to 1e-3."""
-    steps = np.array([0.8191725133961645, 0.6710436067037893, 0.5497004779019703])  # powers of the plastic number
+    steps = np.array(
+        [0.8191725133961645, 0.6710436067037893, 0.5497004779019703]
+    )  # powers of the plastic number
     lattice = np.arange(500_000)[:, None] * steps % 1.0 - 0.5
     middle, box = np.array([0.0, 0.0, 0.2]), np.array([1.0, 1.0, 1.3])
     coarse = middle + lattice * box
@@ -147,13 +151,18 @@ def test_thin_solids_are_limits_of_thick_ones() -> None:
     shell = SHAPES["shell"].body({"outer_diameter": 0.4, "inner_diameter": 0.4 - 1e-6})
     for kind, thick in (("rod", rod), ("plate", plate), ("disc", disc), ("thin-shell", shell)):
         body = squared_gyrations(kind)
-        assert (body.xx, body.yy, body.zz) == pytest.approx((thick.xx, thick.yy, thick.zz), rel=1e-5, abs=1e-12)
+        assert (body.xx, body.yy, body.zz) == pytest.approx(
+            (thick.xx, thick.yy, thick.zz), rel=1e-5, abs=1e-12
+        )
 
 
 def test_frustum_between_cone_and_cylinder() -> None:
     cone = SHAPES["frustum"].body({"lower_diameter": 0.4, "upper_diameter": 0.0, "height": 0.7})
     same = SHAPES["frustum"].body({"lower_diameter": 0.3, "upper_diameter": 0.3, "height": 0.5})
-    for found, wanted, lift in ((cone, squared_gyrations("cone"), 0.0), (same, squared_gyrations("cylinder"), 0.25)):
+    for found, wanted, lift in (
+        (cone, squared_gyrations("cone"), 0.0),
+        (same, squared_gyrations("cylinder"), 0.25),
+    ):
         assert found.volume == pytest.approx(wanted.volume)
         assert found.height == pytest.approx(wanted.height + lift)
         assert (found.xx, found.yy, found.zz) == pytest.approx((wanted.xx, wanted.yy, wanted.zz))

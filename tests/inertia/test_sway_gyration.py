@@ -26,7 +26,9 @@ def seen(*, k: float = 0.12, spacing: float = 0.3, length: float = 1.2, offset: 
     bench = {"length": q(1.9 * length, 1e-3, "m"), "upper_spacing": q(spacing, 3e-4, "m")}
     if offset:
         bench["centre_offset"] = q(offset, 1e-3, "m")
-    rig = Rig(Article("paddle", q(0.9, 1e-3, "kg")), Suspension("bifilar", bench), gravity=q(12.0, 1e-3, "m/s^2"))
+    rig = Rig(
+        Article("paddle", q(0.9, 1e-3, "kg")), Suspension("bifilar", bench), gravity=q(12.0, 1e-3, "m/s^2")
+    )
     return Run("clip", rig, q(yaw, 1e-3, "s"), sway_period=q(sway, 2e-3, "s"))
 
 

@@ -30,19 +30,24 @@ def rotation(seed: int) -> np.ndarray:
     return turned * np.sign(np.linalg.det(turned))
 
 
-def block_tensor(turned: np.ndarray = rotation(5)) -> np.ndarray:
+def block_tensor(turned: np.ndarray | None = None) -> np.ndarray:
+    turned = rotation(5) if turned is None else turned
     body = SHAPES["block"].body({"length": 0.5, "width": 0.25, "height": 0.1})
     return turned @ np.diag([MASS * body.xx, MASS * body.yy, MASS * body.zz]) @ turned.T
 
 
-def swings(true: np.ndarray, axes: object = SEVEN, *, u: float = 1e-4, errors: np.ndarray | None = None) -> list[Run]:
+def swings(
+    true: np.ndarray, axes: object = SEVEN, *, u: float = 1e-4, errors: np.ndarray | None = None
+) -> list[Run]:
     runs = []
     for number, axis in enumerate(np.array(axes, dtype=float)):
         n = axis / np.linalg.norm(axis)
         article = Article("paddle", Quantity(MASS, 1e-4, "kg"), axis=(float(n[0]), float(n[1]), float(n[2])))
         rig = Rig(article, Suspension("bifilar", BENCH), gravity=G)
         x = {key: quantity.value for key, quantity in model_of("bifilar").inputs(rig).items()}
-        period = model_of("bifilar").period(x, float(n @ true @ n)) * (1 + (0.0 if errors is None else errors[number]))
+        period = model_of("bifilar").period(x, float(n @ true @ n)) * (
+            1 + (0.0 if errors is None else errors[number])
+        )
         runs.append(Run(f"axis {number}", rig, Quantity(period, u * period, "s")))
     return runs
 
@@ -75,7 +80,9 @@ def test_moment_about_any_axis() -> None:
 def test_principal_moments_of_a_block_and_their_margin() -> None:
     body = SHAPES["block"].body({"length": 0.5, "width": 0.25, "height": 0.1})
     result = fit_tensor(swings(block_tensor()))
-    assert [axis.moment.value for axis in result.principal] == pytest.approx([MASS * m for m in (body.xx, body.yy, body.zz)])
+    assert [axis.moment.value for axis in result.principal] == pytest.approx(
+        [MASS * m for m in (body.xx, body.yy, body.zz)]
+    )
     # λ₁ + λ₂ − λ₃ = 2 ∫ z² dm = m h²/6 for a block of height h along the axis of the largest moment
     assert result.triangle_margin.value == pytest.approx(MASS * 0.1**2 / 6)
     assert result.doubts == ()
@@ -94,15 +101,24 @@ def test_shared_scale_error_scales_the_whole() -> None:
 def test_perturbation_of_moments_and_axes_against_draws() -> None:
     """Spread of fits to noisy periods beside the uncertainties that one fit states (own errors alone)."""
     true, rng = block_tensor(), np.random.default_rng(11)
-    exact = [replace(run, rig=replace(run.rig, gravity=replace(G, u=0.0), suspension=_exact_bench())) for run in swings(true, u=1e-3)]
-    exact = [replace(run, rig=replace(run.rig, article=replace(run.rig.article, mass=Quantity(MASS, 0.0, "kg")))) for run in exact]
+    exact = [
+        replace(run, rig=replace(run.rig, gravity=replace(G, u=0.0), suspension=_exact_bench()))
+        for run in swings(true, u=1e-3)
+    ]
+    exact = [
+        replace(run, rig=replace(run.rig, article=replace(run.rig.article, mass=Quantity(MASS, 0.0, "kg"))))
+        for run in exact
+    ]
     moments, tilts = [], []
     stated = fit_tensor(exact, axis_u_rad=0.0)
     longest = np.array(stated.principal[0].direction)
     towards = np.array(stated.principal[1].direction)
     for _ in range(150):
         noisy = [
-            replace(run, period=replace(run.period, value=run.period.value * (1 + 1e-3 * rng.standard_normal()))) for run in exact
+            replace(
+                run, period=replace(run.period, value=run.period.value * (1 + 1e-3 * rng.standard_normal()))
+            )
+            for run in exact
         ]
         rows = np.array([_row(run.rig.article.axis) for run in noisy])
         said = [model_of("bifilar").moment(_inputs(run)) for run in noisy]
@@ -143,7 +159,14 @@ def test_condition_of_an_icosahedron() -> None:
     """Six axes through the corners of an icosahedron are the most even set: rows' Gram matrix has eigenvalues 2 and 5, so
     √2.5 (icosahedral design of strength 4; derived by averaging n⁴ over the sphere).
     """
-    corners = [(0, 1, GOLDEN), (0, 1, -GOLDEN), (1, GOLDEN, 0), (1, -GOLDEN, 0), (GOLDEN, 0, 1), (GOLDEN, 0, -1)]
+    corners = [
+        (0, 1, GOLDEN),
+        (0, 1, -GOLDEN),
+        (1, GOLDEN, 0),
+        (1, -GOLDEN, 0),
+        (GOLDEN, 0, 1),
+        (GOLDEN, 0, -1),
+    ]
     result = fit_tensor(swings(block_tensor(), corners))
     assert result.condition == pytest.approx(math.sqrt(2.5))
     assert result.consistency.dof == 0
@@ -154,7 +177,9 @@ def test_condition_does_not_depend_on_the_frame() -> None:
     first = fit_tensor(swings(block_tensor(), SEVEN))
     second = fit_tensor(swings(turned @ block_tensor() @ turned.T, np.array(SEVEN) @ turned.T))
     assert second.condition == pytest.approx(first.condition)
-    assert [a.moment.u for a in second.principal] == pytest.approx([a.moment.u for a in first.principal], rel=1e-6)
+    assert [a.moment.u for a in second.principal] == pytest.approx(
+        [a.moment.u for a in first.principal], rel=1e-6
+    )
 
 
 def test_next_axis_is_where_nothing_was_measured_well() -> None:
@@ -176,7 +201,14 @@ def test_next_axis_gains_what_it_says() -> None:
         found = []
         for run in runs:
             article = replace(run.rig.article, mass=Quantity(MASS, 0.0, "kg"))
-            found.append(replace(run, rig=replace(run.rig, gravity=replace(G, u=0.0), suspension=_exact_bench(), article=article)))
+            found.append(
+                replace(
+                    run,
+                    rig=replace(
+                        run.rig, gravity=replace(G, u=0.0), suspension=_exact_bench(), article=article
+                    ),
+                )
+            )
         covariance = np.array(fit_tensor(found, axis_u_rad=math.radians(0.5)).covariance)
         return math.sqrt(float(np.diag(covariance) @ np.array([1, 1, 1, 2, 2, 2])))
 
@@ -222,7 +254,12 @@ def test_refusals() -> None:
     with pytest.raises(BadInput, match="at least 6"):
         fit_tensor(runs[:5])
     with pytest.raises(BadInput, match="does not say about which axis"):
-        fit_tensor([*runs[:6], replace(runs[6], rig=replace(runs[6].rig, article=replace(runs[6].rig.article, axis=None)))])
+        fit_tensor(
+            [
+                *runs[:6],
+                replace(runs[6], rig=replace(runs[6].rig, article=replace(runs[6].rig.article, axis=None))),
+            ]
+        )
     flat = [(math.cos(a), math.sin(a), 0.0) for a in np.linspace(0, 2.5, 6)] + [(0, 0, 1)]
     with pytest.raises(BadInput, match="leave an element of the matrix open"):
         fit_tensor(swings(block_tensor(), flat))
