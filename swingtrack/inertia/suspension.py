@@ -6,6 +6,7 @@ takes floats, arrays of draws and GTC's uncertain numbers alike), and its exact 
 
 from __future__ import annotations
 
+import math
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from typing import Any, Protocol
@@ -74,11 +75,18 @@ def model_of(kind: str) -> Model:
 
 
 def need_mass(rig: Rig) -> Quantity:
-    """The article's mass; BadRig where the rig does not give it."""
-    if rig.article.mass is None:
+    """Mass of all that hangs there, weights added to the article included; BadRig where the rig gives none."""
+    mass = rig.article.mass
+    if mass is None:
         raise BadRig(
             "article.mass is missing.",
             "Needed: the mass as a scale reads it.",
             'Write mass = "0.912 kg ± 0.5 g".',
         )
-    return rig.article.mass
+    if not rig.article.added:
+        return mass
+    parts = [mass, *(weight.mass for weight in rig.article.added)]
+    u = math.sqrt(math.fsum(part.u**2 for part in parts))
+    return Quantity(
+        math.fsum(part.value for part in parts), u, "kg", stated=all(part.stated for part in parts)
+    )

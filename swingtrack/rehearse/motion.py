@@ -58,7 +58,8 @@ def mechanism_of(rig: Rig, moment: float) -> Mechanism:
         return Mechanism(lambda q: moment, lambda q: 0.0, lambda q: -kappa * q, moment, kappa)
     if rig.article.mass is None:
         raise BadRig("article.mass is missing.", "Needed: the mass of the article that is rehearsed.")
-    mass, g = rig.article.mass.value, _gravity(rig)
+    mass = rig.article.mass.value + math.fsum(weight.mass.value for weight in rig.article.added)
+    g = _gravity(rig)
     if kind == "knife-edge":
         arm = x["pivot_to_centre"]
         about_edge = moment + mass * arm**2

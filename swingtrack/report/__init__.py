@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from .combined import combined_text, solids_text, tensor_text
     from .figures import all_figures, figure_files
+    from .plan import plan_figures, plan_text
     from .html import render_report
     from .rounding import rounded, show
     from .text import audit_text, inertia_text, stopwatch_text, summary_text
@@ -19,6 +20,8 @@ _HOMES = {
     "all_figures": "figures",
     "figure_files": "figures",
     "render_report": "html",
+    "plan_figures": "plan",
+    "plan_text": "plan",
     "rounded": "rounding",
     "show": "rounding",
     "audit_text": "text",
@@ -33,6 +36,8 @@ __all__ = [
     "combined_text",
     "figure_files",
     "inertia_text",
+    "plan_figures",
+    "plan_text",
     "render_report",
     "rounded",
     "show",

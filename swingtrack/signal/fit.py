@@ -24,8 +24,9 @@ from swingtrack.signal.choose import (
 from swingtrack.signal.coordinate import FEWEST_SAMPLES, Coordinate, find_coordinate
 from swingtrack.signal.fitting import Fitted, fit_robustly
 from swingtrack.signal.noise import Noise
-from swingtrack.signal.opening import Opening, open_fit
+from swingtrack.signal.opening import Opening, open_fit, samples_of
 from swingtrack.signal.outcome import Rivals, make_swing
+from swingtrack.signal.retime import MOST_JUMPS, Jump, find_jump, has_even_times, jumps_doubt, mend
 from swingtrack.signal.search import find_line
 from swingtrack.signal.settings import FitSettings
 
@@ -84,6 +85,7 @@ def fit_swing(
     coordinate = _within(find_coordinate(data, view, facing=facing), settings)
     line = find_line(coordinate.t, coordinate.y, expected_modes)
     opening = open_fit(coordinate, line, law, settings)
+    coordinate, opening = _mend_times(coordinate, opening, settings)
     _check_significance(opening.fitted)
     choices = Choices(settings.damping, settings.most_modes, settings.view_shape, settings.outlier_limit)
     fitted = _finish(choose_terms(opening.fitted, choices), settings)
@@ -107,6 +109,34 @@ def _within(coordinate: Coordinate, settings: FitSettings) -> Coordinate:
             "Widen --from and --to.",
         )
     return replace(coordinate, t=coordinate.t[inside], y=coordinate.y[inside], u=coordinate.u[inside])
+
+
+def _mend_times(
+    coordinate: Coordinate, opening: Opening, settings: FitSettings
+) -> tuple[Coordinate, Opening]:
+    """Move times that jump by whole frames, one jump after the other, each seen in the fit without the last."""
+    if coordinate.camera == "series" or not has_even_times(coordinate.t):
+        return coordinate, opening
+    jumps: tuple[Jump, ...] = ()
+    mended, fitted, span = coordinate, opening.fitted, opening.span
+    for _ in range(MOST_JUMPS):
+        jump = find_jump(fitted, span[0])
+        if jump is None:
+            break
+        jumps = (*jumps, jump)
+        mended = mend(mended, jump)
+        span = (max(span[0], float(mended.t[0])), float(min(span[1] + abs(jump.frames), mended.t[-1])))
+        again = fit_robustly(
+            fitted.model, samples_of(mended, span), settings.outlier_limit, sigma=fitted.sigma
+        )
+        if again is None:
+            return coordinate, opening
+        fitted = again
+    if not jumps:
+        return coordinate, opening
+    return replace(mended, doubts=(*coordinate.doubts, jumps_doubt(jumps))), replace(
+        opening, fitted=replace(fitted, model=replace(fitted.model, length_s=span[1] - span[0])), span=span
+    )
 
 
 def _finish(fitted: Fitted, settings: FitSettings) -> Fitted:
