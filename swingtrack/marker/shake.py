@@ -2,8 +2,8 @@
 
 Each spot is a textured square, matched to its own first picture by the inverse compositional step
 δ = H⁻¹ Σ ∇T (I(x + p) − T), H = Σ ∇T ∇Tᵀ, mean and contrast of the square taken out first (S. Baker and
-I. Matthews, Int. J. Computer Vision 56 (2004) 221, section 3.2.1). With two spots or more that lie well apart the
-motion is a shift with a small turn and scale, with one a shift.
+I. Matthews, Int. J. Computer Vision 56 (2004) 221, section 3.2.1). With two spots that lie well apart the
+motion is a shift with a small turn and scale; a spot that none agrees with is not believed.
 """
 
 from __future__ import annotations
@@ -18,7 +18,9 @@ from ..records import Floats
 from .piece import Piece
 
 SIDE = 33  # of the square in pixels
-MOST_SPOTS = 3
+MOST_SPOTS = 5
+FEWEST_AGREEING = 2  # one spot alone may sit on the article itself
+ALIKE_PX, ALIKE_SHARE = 0.2, 0.35  # two fixed spots differ by noise, and by the turn and scale of the camera's motion
 LEAST_APART = 0.3  # of the picture's width, for a turn to be worth taking from two spots
 LONGEST_STEP = 12.0  # px from one frame to the next; more is not a shake but a picture of something else
 
@@ -71,19 +73,16 @@ class Motion:
 
 
 def motion_at(steadier: Steadier, x_px: Floats, y_px: Floats, width: int) -> Motion | None:
-    """Motion of the scene at the dot's places; None where no spot could be followed throughout."""
+    """Motion of the scene at the dot's places; None where no two fixed spots agree on it."""
     good = [s for s in steadier.spots if np.mean(np.isfinite(s.dx)) > 0.9]
     if not good:
         return None
     dx = np.array([_filled(s.dx) for s in good])
     dy = np.array([_filled(s.dy) for s in good])
-    if len(good) >= 3:  # a spot that goes its own way is not fixed
-        far = [
-            float(np.median(np.hypot(dx[k] - np.median(dx, 0), dy[k] - np.median(dy, 0))))
-            for k in range(len(good))
-        ]
-        keep = [k for k in range(len(good)) if far[k] < 0.5 + 3 * float(np.median(far))]
-        dx, dy, good = dx[keep], dy[keep], [good[k] for k in keep]
+    keep = _agreeing(dx, dy)
+    if len(keep) < FEWEST_AGREEING:
+        return None
+    dx, dy, good = dx[keep], dy[keep], [good[k] for k in keep]
     px, py = np.array([s.x_px for s in good]), np.array([s.y_px for s in good])
     size = float(np.hypot(np.std(np.median(dx, 0)), np.std(np.median(dy, 0))))
     noise = float(np.median([_high_pass(a) for a in (*dx, *dy)])) / np.sqrt(len(good))
@@ -99,6 +98,22 @@ def motion_at(steadier: Steadier, x_px: Floats, y_px: Floats, width: int) -> Mot
         ox, oy = x_px - px.mean(), y_px - py.mean()
         mean_x, mean_y = mean_x + scale * ox - turn * oy, mean_y + scale * oy + turn * ox
     return Motion(mean_x, mean_y, size, noise)
+
+
+def _agreeing(dx: Floats, dy: Floats) -> list[int]:
+    """The largest set of spots that move alike; a spot on the article, or on anything that moves, goes its own way.
+
+    Parameters
+    ----------
+    dx, dy : (n_spots, n_frames) float
+    """
+    sets = []
+    for k in range(len(dx)):
+        apart = np.sqrt(np.mean((dx - dx[k]) ** 2 + (dy - dy[k]) ** 2, axis=1))
+        own = float(np.hypot(np.std(dx[k]), np.std(dy[k])))
+        sets.append(([int(i) for i in np.flatnonzero(apart <= ALIKE_PX + ALIKE_SHARE * own)], own))
+    # of sets equally large the stillest is the scene: what swings moves more than a camera that is held
+    return max(sets, key=lambda item: (len(item[0]), -item[1]))[0]
 
 
 def _choose(picture: Piece, avoid: list[tuple[float, float, float, float]]) -> list[FixedSpot]:
