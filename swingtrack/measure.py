@@ -149,12 +149,14 @@ def measure_path(
 def fit_with_law(data: Path | Series, rig: Rig | None) -> Swing:
     """Fit the swing with the exact law of the rig's suspension, or without a law where there is no rig."""
     from .inertia import expected_modes, swing_law
-    from .signal import fit_swing
+    from .signal import FitSettings, fit_swing
 
     if rig is None:
         return fit_swing(data)
     reach = _largest_swing(data)
-    first = fit_swing(data, law=swing_law(rig, period_s=None, q_max_rad=reach), view=rig.view)
+    # The radius of gyration that the law needs asks little of the period: a plain fit will do.
+    plain = FitSettings(damping=("viscous",), most_modes=0, view_shape=False)
+    first = fit_swing(data, law=swing_law(rig, period_s=None, q_max_rad=reach), view=rig.view, settings=plain)
     law = _law_for(rig, first, reach)
     return fit_swing(
         data, law=law, view=rig.view, expected_modes=tuple(expected_modes(rig, first.period.value))

@@ -3,9 +3,12 @@
 from __future__ import annotations
 
 import os
-from pathlib import Path
 
-import pytest
+os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")  # before numpy is loaded, as the command line does
+
+from pathlib import Path  # noqa: E402
+
+import pytest  # noqa: E402
 
 REPOSITORY = Path(__file__).resolve().parents[1]
 

@@ -12,6 +12,9 @@ import sys
 from ..errors import SwingtrackError
 
 INTERRUPTED = 130
+# The matrices here are tall and narrow: threads of the linear algebra cost more than they give (seven times slower
+# on two busy cores), and --jobs is the way to use more cores. Read when numpy is first loaded.
+ONE_THREAD = ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS")
 
 
 def run(arguments: list[str] | None = None) -> int:
@@ -20,6 +23,8 @@ def run(arguments: list[str] | None = None) -> int:
     debug = "--debug" in given
     if debug:
         given.remove("--debug")
+    for name in ONE_THREAD:
+        os.environ.setdefault(name, "1")
     from .app import app
 
     try:

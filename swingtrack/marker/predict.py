@@ -116,7 +116,7 @@ def dominant_frequency(t_s: np.ndarray, xy_px: np.ndarray) -> tuple[float, tuple
     grid = np.arange(0.5 / span, highest, 0.12 / span)
     if len(grid) < 3:
         return None
-    explained = np.array([_explained(t, data, 2 * np.pi * f) for f in grid]) / total
+    explained = _explained(t, data, 2 * np.pi * grid) / total
     best = int(np.argmax(explained))
     f = grid[best]
     if 0 < best < len(grid) - 1:
@@ -130,7 +130,20 @@ def dominant_frequency(t_s: np.ndarray, xy_px: np.ndarray) -> tuple[float, tuple
     return float(w), (float(coefficients[0, 0]), float(coefficients[0, 1])), share
 
 
-def _explained(t: np.ndarray, data: np.ndarray, w: float) -> float:
-    base = np.column_stack([np.ones_like(t), np.cos(w * t), np.sin(w * t)])
-    q = np.linalg.qr(base)[0]
-    return float(np.sum((q.T @ data) ** 2))
+def _explained(t: np.ndarray, data: np.ndarray, w: np.ndarray) -> np.ndarray:
+    """Sum of squares that 1, cos ωt, sin ωt explain of centred data (n, 2), for each of the frequencies (m,).
+
+    The normal equations of all frequencies are solved together; they are well conditioned from half a cycle on.
+    """
+    c, s = np.cos(np.outer(w, t)), np.sin(np.outer(w, t))
+    n = float(len(t))
+    normal = np.empty((len(w), 3, 3))
+    normal[:, 0, 0] = n
+    normal[:, 0, 1] = normal[:, 1, 0] = c.sum(axis=1)
+    normal[:, 0, 2] = normal[:, 2, 0] = s.sum(axis=1)
+    normal[:, 1, 1] = np.einsum("ij,ij->i", c, c)
+    normal[:, 2, 2] = n - normal[:, 1, 1]
+    normal[:, 1, 2] = normal[:, 2, 1] = np.einsum("ij,ij->i", c, s)
+    normal += 1e-9 * n * np.eye(3)
+    right = np.stack([np.broadcast_to(data.sum(axis=0), (len(w), 2)), c @ data, s @ data], axis=1)
+    return np.asarray(np.einsum("ijk,ijk->i", right, np.linalg.solve(normal, right)))
