@@ -70,11 +70,16 @@ def choose_terms(fitted: Fitted, choices: Choices) -> Fitted:
     """
     found = _choose(fitted, choices)
     if np.isfinite(_nearest_beats(found)) and noise_of(found).structured:
-        reach = SWARM_REACH * fitted.model.values["omega0"] / (2 * np.pi) * fitted.model.length_s
-        without = _choose(fitted, replace(choices, nearest_beats=max(SWARM_BEATS, reach)))
+        without = _choose(fitted, beyond_swarm(choices, fitted))
         if found.sigma > SWARM_GAIN * without.sigma:
             return without
     return found
+
+
+def beyond_swarm(choices: Choices, fitted: Fitted) -> Choices:
+    """The same choices with modes looked for only beyond the reach of a phase that wanders."""
+    reach = SWARM_REACH * fitted.model.values["omega0"] / (2 * np.pi) * fitted.model.length_s
+    return replace(choices, nearest_beats=max(SWARM_BEATS, reach))
 
 
 def _nearest_beats(fitted: Fitted) -> float:

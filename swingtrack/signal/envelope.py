@@ -59,7 +59,7 @@ def amplitude_at(t: Floats, start: float, losses: Losses) -> Floats:
     >>> import numpy as np
     >>> losses = Losses.from_coefficients(1.0, 0.01, 0.05, 0.0)
     >>> round(float(amplitude_at(np.array([20 * np.pi]), 1.0, losses)[0]), 4)
-    0.2680
+    0.2681
     """
     g, c, d = losses.viscous, losses.quadratic, losses.dry
     # tanh(h t)/h, analytic through Δ = 0, avoids every special case.

@@ -15,6 +15,7 @@ import numpy as np
 from numpy.polynomial import chebyshev
 
 from swingtrack.records import Floats
+from swingtrack.signal.envelope import Losses, amplitude_at
 from swingtrack.signal.half_swing import TIME_TERMS, Damping, HalfSwings, solve_half_swings
 from swingtrack.signal.restoring import Restoring
 
@@ -144,14 +145,12 @@ def _tabulate(
 
 
 def _range(state: SwingState, x_end: float) -> tuple[float, float]:
-    """A first guess of the amplitudes in the record, from the averaged loss rate."""
-    a, steps = state.amplitude, 64
+    """A first guess of the amplitudes in the record, by the averaged losses."""
     d = state.damping
-    dx = max(x_end, 1.0) / steps
-    for _ in range(steps):
-        rate = d.zeta * a + 4 * d.beta * a * a / (3 * np.pi) + 2 * d.dry / np.pi
-        a = min(max(a - rate * dx, 0.02 * state.amplitude), 50 * state.amplitude)
-    return min(0.93 * a, 0.9 * state.amplitude), max(1.001 * state.amplitude, 1.1 * a)
+    losses = Losses.from_coefficients(1.0, d.zeta, d.beta, d.dry)
+    last = float(amplitude_at(np.array([max(x_end, 1.0)]), state.amplitude, losses)[0])
+    last = min(max(last, 0.02 * state.amplitude), 50 * state.amplitude)
+    return min(0.93 * last, 0.9 * state.amplitude), max(1.001 * state.amplitude, 1.1 * last)
 
 
 def _in_amplitude(half: HalfSwings) -> HalfSwings:

@@ -7,7 +7,7 @@ In order: the coordinate (`coordinate`), the line in the spectrum (`search`), th
 
 from __future__ import annotations
 
-from dataclasses import replace
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -16,6 +16,7 @@ from swingtrack.records import ExpectedMode, Path, Series, Swing, SwingLaw, View
 from swingtrack.signal import quantities as q
 from swingtrack.signal.choose import (
     Choices,
+    beyond_swarm,
     choose_terms,
     cramped_fit,
     noise_of,
@@ -85,15 +86,19 @@ def fit_swing(
     coordinate = _within(find_coordinate(data, view, facing=facing), settings)
     line = find_line(coordinate.t, coordinate.y, expected_modes)
     opening = open_fit(coordinate, line, law, settings)
-    coordinate, opening = _mend_times(coordinate, opening, settings)
-    _check_significance(opening.fitted)
+    retimed = _check_times(coordinate, opening, settings)
+    coordinate, opening = retimed.coordinate, retimed.opening
+    _check_significance(retimed.sound)
     choices = Choices(settings.damping, settings.most_modes, settings.view_shape, settings.outlier_limit)
+    if any(retimed.change_s):
+        choices = beyond_swarm(choices, opening.fitted)  # a phase that jumps looks like modes close by
     fitted = _finish(choose_terms(opening.fitted, choices), settings)
-    _check_significance(fitted)
+    if not any(retimed.change_s):
+        _check_significance(fitted)
     rivals = [*unresolved_modes(fitted, choices), cramped_fit(fitted)]
     spread = max((_spread(fitted, rival) for rival in rivals if rival is not None), default=0.0)
     settled = Opening(fitted, opening.span, opening.knowledge)
-    return make_swing(coordinate, settled, noise_of(fitted), Rivals(spread, expected_modes))
+    return make_swing(coordinate, settled, noise_of(fitted), Rivals(spread, expected_modes, retimed.change_s))
 
 
 def _within(coordinate: Coordinate, settings: FitSettings) -> Coordinate:
@@ -111,18 +116,26 @@ def _within(coordinate: Coordinate, settings: FitSettings) -> Coordinate:
     return replace(coordinate, t=coordinate.t[inside], y=coordinate.y[inside], u=coordinate.u[inside])
 
 
-def _mend_times(
-    coordinate: Coordinate, opening: Opening, settings: FitSettings
-) -> tuple[Coordinate, Opening]:
-    """Move times that jump by whole frames, one jump after the other, each seen in the fit without the last."""
+@dataclass(frozen=True, eq=False)
+class _Retimed:
+    """What is fitted after the frame times were looked at.
+
+    `sound` is the plain fit to mended times, by which the swing is judged to be one. `change_s`: what mending them would change in the period and in the period in the clip, s.
+    """
+
+    coordinate: Coordinate
+    opening: Opening
+    sound: Fitted
+    change_s: tuple[float, float] = (0.0, 0.0)
+
+
+def _check_times(coordinate: Coordinate, opening: Opening, settings: FitSettings) -> _Retimed:
+    """Find whole frames by which the swing jumps, one after the other, each seen in the fit without the last."""
     if coordinate.camera == "series" or not has_even_times(coordinate.t):
-        return coordinate, opening
+        return _Retimed(coordinate, opening, opening.fitted)
     jumps: tuple[Jump, ...] = ()
     mended, fitted, span = coordinate, opening.fitted, opening.span
-    for _ in range(MOST_JUMPS):
-        jump = find_jump(fitted, span[0])
-        if jump is None:
-            break
+    while len(jumps) < MOST_JUMPS and (jump := find_jump(fitted, span[0])) is not None:
         jumps = (*jumps, jump)
         mended = mend(mended, jump)
         span = (max(span[0], float(mended.t[0])), float(min(span[1] + abs(jump.frames), mended.t[-1])))
@@ -130,13 +143,20 @@ def _mend_times(
             fitted.model, samples_of(mended, span), settings.outlier_limit, sigma=fitted.sigma
         )
         if again is None:
-            return coordinate, opening
-        fitted = again
+            return _Retimed(coordinate, opening, opening.fitted)
+        fitted = replace(again, model=replace(again.model, length_s=span[1] - span[0]))
     if not jumps:
-        return coordinate, opening
-    return replace(mended, doubts=(*coordinate.doubts, jumps_doubt(jumps))), replace(
-        opening, fitted=replace(fitted, model=replace(fitted.model, length_s=span[1] - span[0])), span=span
+        return _Retimed(coordinate, opening, opening.fitted)
+    after, before = (
+        q.period_in_clip(q.estimate(one, noise_of(one)), one.model.length_s).period.value
+        for one in (fitted, opening.fitted)
     )
+    interval = float(np.median(np.diff(coordinate.t)))
+    doubts = (*coordinate.doubts, jumps_doubt(jumps, interval, after, moved=settings.mend_times))
+    if settings.mend_times:
+        return _Retimed(replace(mended, doubts=doubts), replace(opening, fitted=fitted, span=span), fitted)
+    small = 2 * np.pi * (1 / fitted.model.values["omega0"] - 1 / opening.fitted.model.values["omega0"])
+    return _Retimed(replace(coordinate, doubts=doubts), opening, fitted, (float(small), after - before))
 
 
 def _finish(fitted: Fitted, settings: FitSettings) -> Fitted:

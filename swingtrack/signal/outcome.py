@@ -23,10 +23,12 @@ KNOWN_TO = 0.25
 
 @dataclass(frozen=True)
 class Rivals:
-    """What else may move in the clip: doubt of the period from motions not resolved, s; modes that the rig predicts."""
+    """What else may move in the clip: doubt of the period from motions not resolved, s; modes that the rig predicts;
+    change of period and of period in clip that mended frame times would make, s."""
 
     spread_s: float
     expected: tuple[ExpectedMode, ...]
+    retimed_s: tuple[float, float] = (0.0, 0.0)
 
 
 def make_swing(coordinate: Coordinate, opening: Opening, noise: Noise, rivals: Rivals) -> Swing:
@@ -38,7 +40,8 @@ def make_swing(coordinate: Coordinate, opening: Opening, noise: Noise, rivals: R
     envelope = envelope_at(fitted, np.linspace(0, length, 200))
     in_clip = q.period_in_clip(found, length)
     relative = knowledge.law.ratio_relative_u if knowledge.law is not None else 0.0
-    period = _widened(q.period(found), (rivals.spread_s, in_clip.period.value * in_clip.shift * relative))
+    parts = (rivals.spread_s, rivals.retimed_s[0], in_clip.period.value * in_clip.shift * relative)
+    period = _widened(q.period(found), parts)
     rate = q.decay_rate(found, float(np.mean(envelope)))
     ratio = q.damping_ratio(rate, values["omega0"])
     terms = q.damping_terms(found, float(envelope[0]), float(envelope[-1]))
@@ -49,7 +52,7 @@ def make_swing(coordinate: Coordinate, opening: Opening, noise: Noise, rivals: R
     findings = Findings(found, noise, coordinate, opening, in_clip, modes, period, rivals.spread_s, known)
     return Swing(
         period=period,
-        period_in_clip=in_clip.period,
+        period_in_clip=_widened(in_clip.period, (rivals.retimed_s[1],)),
         decay_rate=rate,
         half_life=q.half_life(rate),
         damping_ratio=ratio,

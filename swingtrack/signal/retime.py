@@ -16,8 +16,10 @@ from swingtrack.records import Doubt, Floats
 from swingtrack.signal.coordinate import Coordinate
 from swingtrack.signal.fitting import MAD_TO_SIGMA, Fitted
 
-# Residuals are averaged over this many frames on either side of a jump: one bad frame is then no jump.
-BESIDE = 3
+# A line through four residuals on either side is carried on to the place between two frames: these are its weights
+# (least squares), from the far one to the near one. What is smooth makes no jump there.
+CARRY_ON = np.array([-0.35, 0.05, 0.45, 0.85])
+BESIDE = len(CARRY_ON)
 # A jump stands this many robust standard deviations out of all the others, (chance: none in a million)
 LEAST_JUMP = 6.0
 # makes a whole number of frames to within this share of one,
@@ -32,7 +34,7 @@ MOST_JUMPS = 12
 
 @dataclass(frozen=True)
 class Jump:
-    """Times from `at_s` on are early by `frames` intervals (late, where negative)."""
+    """Times from `at_s` on are early by `frames` intervals (late, where negative); `at_s` as mended so far."""
 
     at_s: float
     frames: int
@@ -55,15 +57,14 @@ def find_jump(fitted: Fitted, start_s: float) -> Jump | None:
     interval = float(np.median(np.diff(t)))
     residual = fitted.kept_residuals / fitted.samples.weight[kept]
     speed = _speed(fitted, t)
-    sums = np.concatenate([[0.0], np.cumsum(residual)])
     i = np.arange(BESIDE, len(t) - BESIDE)
-    jump = (sums[i + BESIDE] - 2 * sums[i] + sums[i - BESIDE]) / BESIDE
+    windows = np.lib.stride_tricks.sliding_window_view(residual, BESIDE)
+    jump = windows[i] @ CARRY_ON[::-1] - windows[i - BESIDE] @ CARRY_ON
     usual = MAD_TO_SIGMA * float(np.median(np.abs(jump - np.median(jump))))
     moving = (speed[i] + speed[i - 1]) / 2
     fast = np.abs(moving) > LEAST_SPEED * np.max(np.abs(speed))
     frames = np.where(fast, jump / np.where(fast, moving, 1.0) / interval, 0.0)
     whole = np.rint(frames)
-    # The average over frames beside a jump is smooth in what is not a jump; take the sharpest place.
     candidate = fast & (whole != 0) & (np.abs(frames - whole) < WHOLE_FRAMES)
     candidate &= np.abs(jump) > LEAST_JUMP * max(usual, fitted.sigma * 1e-6)
     candidate &= _sharp(residual, moving * interval, i)
@@ -95,13 +96,27 @@ def mend(coordinate: Coordinate, jump: Jump) -> Coordinate:
     return replace(coordinate, t=t[kept], y=coordinate.y[kept], u=coordinate.u[kept])
 
 
-def jumps_doubt(jumps: tuple[Jump, ...]) -> Doubt:
-    """What was mended."""
-    ordered = sorted(jumps, key=lambda jump: jump.at_s)
-    places = ", ".join(f"{jump.frames:+d} at {jump.at_s:.2f} s" for jump in ordered)
+def _as_stored(jumps: tuple[Jump, ...], interval_s: float) -> list[tuple[float, int]]:
+    """Stored time and size of every jump, in their order: what was mended before it is taken off again."""
+    stored = []
+    for k, jump in enumerate(jumps):
+        earlier = sum(other.frames for other in jumps[:k] if other.at_s <= jump.at_s)
+        stored.append((jump.at_s - earlier * interval_s, jump.frames))
+    return sorted(stored)
+
+
+def jumps_doubt(jumps: tuple[Jump, ...], interval_s: float, mended_period_s: float, *, moved: bool) -> Doubt:
+    """What was found, and what was or would be made of it."""
+    places = ", ".join(f"{frames:+d} at {at_s:.2f} s" for at_s, frames in _as_stored(jumps, interval_s))
     return Doubt(
         "frame-times-jump",
-        f"The swing jumps by whole frames, as if images were missing (+) or shown twice (−): {places}. The later times "
-        "were moved accordingly.",
+        f"The swing jumps by whole frames, as if images were missing (+) or shown twice (−) under times that do not "
+        f"say so: {places}. "
+        + (
+            "The later times were moved accordingly."
+            if moved
+            else f"With the times moved accordingly the mean period would be {mended_period_s:.5g} s; the uncertainty "
+            "covers both."
+        ),
         "Film with a camera application that keeps a steady rate, in good light.",
     )

@@ -23,6 +23,9 @@ class FitSettings:
         Residuals beyond this many robust standard deviations are set aside as bad frames.
     view_shape : bool
         Let the camera's skew bend the waveform (q² and q³ terms) where the clip shows it.
+    mend_times : bool
+        Where the swing itself jumps by whole frames, move the later times accordingly. By default the file's times
+        stand, and what mending would change is in the uncertainty and said.
     """
 
     from_s: float | None = None
@@ -32,3 +35,4 @@ class FitSettings:
     trim: bool = True
     outlier_limit: float = 5.0
     view_shape: bool = True
+    mend_times: bool = False

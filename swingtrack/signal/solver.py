@@ -20,7 +20,7 @@ Residuals = Callable[[Floats], tuple[Floats, Floats] | None]
 
 MOST_STEPS = 200
 # Share of the unit matrix added at first: larger is slower and surer from a poor start.
-FIRST_DAMPING = 1e-3
+FIRST_DAMPING = 1e-5
 POLISHING_STEPS = 40
 # Relative size of a scaled step, and predicted relative gain in S, below which the search has settled.
 STEP_TOLERANCE = 1e-13

@@ -44,7 +44,7 @@ def amplitude_spectrum(t: Floats, y: Floats, *, padding: int = PADDING, tapered:
     >>> import numpy as np
     >>> t = np.arange(400) / 20
     >>> found = amplitude_spectrum(t, 3 * np.cos(2 * np.pi * 1.25 * t))
-    >>> float(found.hz[found.amplitude.argmax()])
+    >>> round(float(found.hz[found.amplitude.argmax()]), 6)
     1.25
     """
     step = float(np.median(np.diff(t))) / 2
