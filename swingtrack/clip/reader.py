@@ -74,7 +74,7 @@ class Clip:
             self._time_base = Fraction(stream.time_base) if stream.time_base else Fraction(1, 90_000)
             self.codec = stream.codec_context.name
             self._index_times = _scan(container, stream)
-            self._other_tracks = len(container.streams) - 1
+            self._cut = _reaches_beyond(stream, file.stat().st_size)
         first = self._first_picture()
         self.width, self.height = first.width, first.height
         _check_size(self.width, self.height, file)
@@ -130,6 +130,9 @@ class Clip:
                 if from_s is not None and t_s < from_s:
                     continue
                 yield frame
+            else:
+                if self._cut and seen.broken_at is None:
+                    seen.broken_at = seen.times[-1] if seen.times else 0.0
         self._keep(seen)
 
     def upright(self, x_px: Floats, y_px: Floats) -> tuple[Floats, Floats]:
@@ -270,21 +273,22 @@ class Clip:
 
 
 def _opened(file: FilePath) -> Any:
+    if file.is_dir():
+        raise BadClip(f"{file} is a folder.", NEEDED, "Give the clip itself.")
     try:
-        if file.is_dir():
-            raise BadClip(f"{file} is a folder.", NEEDED, "Give the clip itself.")
-        if file.stat().st_size == 0:
-            raise BadClip(f"{file} is empty.", NEEDED, "Copy the file from the phone again.")
-        return av.open(str(file))
+        size = file.stat().st_size
+        container = av.open(str(file)) if size else None
     except FileNotFoundError:
         raise BadClip(f"There is no file {file}.", NEEDED, "Check the name and the folder.") from None
     except PermissionError:
         raise BadClip(f"{file} may not be read.", NEEDED, "Check its permissions.") from None
     except (av.FFmpegError, OSError, ValueError) as error:
         reason = getattr(error, "strerror", None) or type(error).__name__
-        raise BadClip(
-            f"{file} can't be opened as a video ({reason}).", NEEDED, "Is it the right file, and whole?"
-        ) from None
+        found = f"{file} can't be opened as a video ({reason})."
+        raise BadClip(found, NEEDED, "Is it the right file, and whole?") from None
+    if container is None:
+        raise BadClip(f"{file} is empty.", NEEDED, "Copy the file from the phone again.")
+    return container
 
 
 def _video(container: Any, file: FilePath) -> Any:
@@ -318,6 +322,15 @@ def _scan(container: Any, stream: Any) -> Floats:
         pass  # a cut file: what is whole is used, and reading the frames says where it breaks off
     times = np.sort(np.array(stamps, dtype=np.float64))
     return times - times[0] if times.size else times
+
+
+def _reaches_beyond(stream: Any, size: int) -> bool:
+    """Whether the index lists pictures that lie beyond the end of the file: it was cut."""
+    entries = getattr(stream, "index_entries", None)
+    if entries is None or not len(entries):
+        return False
+    last = entries[len(entries) - 1]
+    return bool(last.pos + last.size > size)
 
 
 def _decoded(container: Any, stream: Any, seen: _Seen) -> Iterator[Any]:

@@ -12,7 +12,7 @@ from ..errors import BadClip
 CAPTURE_KEYS = ("com.android.capture.fps", "com.apple.quicktime.capture.fps")
 SAME_RATE = 1.2  # capture over stored rate below which a file is not slow motion: rates vary by a few percent
 PLAYBACK_RATES = (24.0, 25.0, 30.0)  # at which phones store slow motion; above, nothing is stretched
-STRETCH_TICKS = 2400  # ticks a second in which stretched 240 frames/s files were seen (docs/filming.md)
+STRETCH_TICKS = (2400, 4800)  # ticks a second in which stretched 240 frames/s files are stored (seen: 2400)
 
 
 @dataclass(frozen=True)
@@ -71,7 +71,7 @@ def looks_stretched(
         return ""
     at_playback = any(abs(stored_rate_hz / rate - 1.0) < 2e-3 for rate in PLAYBACK_RATES)
     ticks = time_base.denominator / time_base.numerator
-    fast_clock = ticks % STRETCH_TICKS == 0 and ticks <= 8 * STRETCH_TICKS
+    fast_clock = ticks in STRETCH_TICKS
     intent = any("playback-intent" in key for key in metadata)
     if at_playback and (fast_clock or intent):
         return f"All frames are exactly {1000.0 / stored_rate_hz:.3f} ms apart on a clock of {ticks:.0f} ticks a second, as stretched slow motion is stored."

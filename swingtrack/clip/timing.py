@@ -12,7 +12,6 @@ GAP = 1.5  # intervals longer than this many usual ones have frames missing in t
 UNEVEN_SHARE = (
     0.02  # spread over usual interval above which frames are called uneven: a tenth of common phone jitter
 )
-COMMON_STRETCH_BASE = 2400  # ticks a second in which stretched slow motion was seen stored (docs/filming.md)
 
 
 @dataclass(frozen=True)
