@@ -73,14 +73,15 @@ def read_goal(file: str | Path) -> Goal:
     """
     checked = validate_tables(_GoalFile, read_toml(file), name=str(file))
     article, bench, camera = checked.article, checked.bench, checked.camera
-    size = None if article.size is None else article.size.value
+    mass = article.mass.value
+    size = article.size.value if article.size else math.sqrt(12.0 * article.moment.value / mass)  # a uniform rod's
     return Goal(
         name=article.name,
         mass=article.mass,
         moment_kg_m2=article.moment.value
         if article.moment
         else article.mass.value * (size / math.sqrt(12.0)) ** 2,
-        size_m=size or math.sqrt(12.0 * article.moment.value / article.mass.value),
+        size_m=size,
         room_height_m=checked.room.height.value,
         room_width_m=checked.room.width.value,
         wanted_relative=checked.goal.uncertainty.value,

@@ -15,7 +15,7 @@ import numpy as np
 
 from ..errors import BadClip
 from ..records import ClipFacts, Doubt, Floats, Frame
-from .first_planes import frame_of
+from .planes import is_direct, view_planes
 from .slow_motion import CaptureRate, capture_rate, looks_stretched
 from .timing import TimingAudit, audit_times, find_repeats, timing_doubts
 
@@ -119,14 +119,14 @@ class Clip:
                     break
                 if to_s is not None and t_s > to_s:
                     break
-                frame, converted = frame_of(picture, index, t_s)
+                frame = Frame(index, t_s, *view_planes(picture))
                 sparse = frame.luma[::SPARSE, ::SPARSE].astype(np.int16)
                 seen.changes.append(np.nan if before is None else float(np.abs(sparse - before).mean()))
                 before = sparse
                 seen.times.append(t_s)
                 seen.corrupt += bool(picture.is_corrupt)
                 seen.interlaced |= bool(picture.interlaced_frame)
-                seen.converted = picture.format.name if converted else seen.converted
+                seen.converted = seen.converted if is_direct(picture.format.name) else picture.format.name
                 if from_s is not None and t_s < from_s:
                     continue
                 yield frame
