@@ -92,3 +92,18 @@ def combine_results(results: Sequence[str | FilePath], **options: Any) -> Any:
 
 def _rig(rig: AnyRig) -> Rig | None:
     return rig if rig is None or isinstance(rig, Rig) else read_rig(rig)
+
+
+def _show_in_notebooks() -> None:
+    """Give the records their notebook tables. It is done here because records know nothing of report/."""
+
+    def table(record: Any) -> str:
+        from .report.notebook import notebook_html
+
+        return notebook_html(record)
+
+    for kind in (Measurement, Swing, Inertia, Stopwatch, Path, Quantity):
+        kind._repr_html_ = table  # type: ignore[attr-defined]
+
+
+_show_in_notebooks()

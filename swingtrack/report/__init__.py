@@ -8,26 +8,31 @@ from typing import TYPE_CHECKING, Any
 if TYPE_CHECKING:
     from .combined import combined_text, solids_text, tensor_text
     from .figures import all_figures, figure_files
-    from .plan import plan_figures, plan_text
     from .html import render_report
+    from .notebook import notebook_html
+    from .plan import plan_figures, plan_text
     from .rounding import rounded, show
+    from .series import render_series, series_files
     from .text import audit_text, inertia_text, stopwatch_text, summary_text
 
 _HOMES = {
-    "combined_text": "combined",
-    "solids_text": "combined",
-    "tensor_text": "combined",
     "all_figures": "figures",
+    "audit_text": "text",
+    "combined_text": "combined",
     "figure_files": "figures",
-    "render_report": "html",
+    "inertia_text": "text",
+    "notebook_html": "notebook",
     "plan_figures": "plan",
     "plan_text": "plan",
+    "render_report": "html",
+    "render_series": "series",
     "rounded": "rounding",
+    "series_files": "series",
     "show": "rounding",
-    "audit_text": "text",
-    "inertia_text": "text",
+    "solids_text": "combined",
     "stopwatch_text": "text",
     "summary_text": "text",
+    "tensor_text": "combined",
 }
 
 __all__ = [
@@ -36,10 +41,13 @@ __all__ = [
     "combined_text",
     "figure_files",
     "inertia_text",
+    "notebook_html",
     "plan_figures",
     "plan_text",
     "render_report",
+    "render_series",
     "rounded",
+    "series_files",
     "show",
     "solids_text",
     "stopwatch_text",

@@ -9,6 +9,7 @@ import numpy as np
 from ..records import Swing
 from .decimate import keep_extremes
 from .figure_swing import scale_of
+from .layout import short
 from .look import DATA, FAINT, FIT, key, new_figure, plain
 
 
@@ -28,7 +29,7 @@ def draw_amplitude(ax: Any, swing: Swing) -> Any:
     ax.plot(trace.t_s[shown], scale * trace.measured[shown], "-", lw=0.6, color=DATA, alpha=0.6)
     ax.plot([], [], "-", lw=1.2, color=DATA, alpha=0.7, label="measured swing")
     shown = kept[keep_extremes(trace.amplitude[kept])]
-    label = f"amplitude, {swing.damping_law} damping"
+    label = f"amplitude, {short(swing.damping_law, 24)} damping"
     for sign in (1.0, -1.0):
         ax.plot(
             trace.t_s[shown],

@@ -6,9 +6,11 @@ from collections.abc import Sequence
 from typing import Any
 
 from ..records import BudgetLine
+from .layout import short
 from .look import DATA, INK, new_figure, plain
 from .rounding import percent
 
+LONGEST_NAME = 34  # signs; longer ones leave the bars no room
 MOST_BARS = 12  # the rest, each smaller than these, is drawn as one
 
 
@@ -51,4 +53,4 @@ def draw_budget(ax: Any, budget: Sequence[BudgetLine]) -> Any:
 
 def input_name(name: str) -> str:
     """An input as people read it: "upper_spacing" → "upper spacing"."""
-    return name.replace("_", " ")
+    return short(name.replace("_", " "), LONGEST_NAME)

@@ -8,6 +8,7 @@ import numpy as np
 
 from ..records import Swing
 from .figure_swing import scale_of
+from .layout import short
 from .look import DATA, FIT, INK, key, new_figure, plain, say
 
 BEYOND = 1.1  # the law is drawn a tenth beyond the largest amplitude
@@ -41,7 +42,7 @@ def draw_period_amplitude(ax: Any, swing: Swing) -> Any:
             "-",
             lw=1.6,
             color=FIT,
-            label=f"{law.name} suspension, exact",
+            label=f"{short(law.name, 20)} suspension, exact",
         )
     ax.errorbar(
         [0.0],

@@ -9,6 +9,7 @@ import numpy as np
 from ..records import Swing
 from .decimate import keep_extremes
 from .figure_swing import scale_of
+from .layout import short
 from .look import DATA, FIT, THIRD, new_figure, plain, say
 from .rounding import bare
 
@@ -35,7 +36,7 @@ def draw_spectrum(ax: Any, swing: Swing) -> Any:
     shown = keep_extremes(height)
     ax.loglog(hz[shown], np.maximum(height[shown], FLOOR * height.max()), "-", lw=0.8, color=DATA, zorder=2)
     named = [(1.0 / swing.period_in_clip.value, "swing", FIT, "-")]
-    named += [(mode.frequency_hz, mode.kind, THIRD, "--") for mode in swing.other_modes]
+    named += [(mode.frequency_hz, short(mode.kind, 16), THIRD, "--") for mode in swing.other_modes]
     for row, (frequency, kind, colour, dash) in enumerate(sorted(named)):
         ax.axvline(frequency, color=colour, lw=1.4, ls=dash, zorder=1)
         # Names step down one row each, so that two modes close together stay legible.

@@ -8,6 +8,7 @@ import numpy as np
 
 from ..records import Bools, SwingTrace
 from .decimate import keep_extremes
+from .layout import short
 from .look import DATA, FAINT, FIT, INK, SHADE, WIDE, key, new_figure, plain
 
 DEGREES = 180.0 / np.pi
@@ -16,7 +17,7 @@ LEFT_OUT_S = 1e-6  # shorter stretches at either end are rounding, not a part le
 
 def scale_of(unit: str) -> tuple[float, str]:
     """Factor and unit in which a trace is shown: angles in degrees; a unit that nobody knows says so."""
-    return (DEGREES, "°") if unit == "rad" else (1.0, unit or "unit of the series")
+    return (DEGREES, "°") if unit == "rad" else (1.0, short(unit, 12) or "unit of the series")
 
 
 def set_aside(trace: SwingTrace) -> Bools:
@@ -58,7 +59,7 @@ def draw_swing(ax: Any, trace: SwingTrace) -> Any:
     _shade_left_out(ax, trace, label="not the free swing")
     ax.margins(x=0.01)
     # Above the data, which fills the axes from side to side.
-    key(ax, loc="lower right", bbox_to_anchor=(1.0, 0.98), ncols=4, borderaxespad=0.0)
+    key(ax, loc="lower right", bbox_to_anchor=(1.0, 0.98), ncols=4, borderaxespad=0.0, enlarged=2.5)
     return plain(ax, "time, s", f"swing, {unit}")
 
 

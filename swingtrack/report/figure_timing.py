@@ -40,5 +40,5 @@ def draw_timing(ax: Any, path: Path) -> Any:
     room = max(0.08 * (high - low), 0.05 * usual)
     ax.set_ylim(max(0.0, low - room), high + room)
     ax.margins(x=0.01)
-    key(ax, loc="lower right", bbox_to_anchor=(1.0, 0.99), ncols=3, borderaxespad=0.0)
+    key(ax, loc="lower right", bbox_to_anchor=(1.0, 0.99), ncols=3, borderaxespad=0.0, enlarged=2.5)
     return plain(ax, "time in the clip, s", "interval, ms")

@@ -17,7 +17,7 @@ from .figures import drawings
 from .inline_svg import inline_svg
 from .numbers import Numbers
 from .plot_data import plot_data
-from .units import second_moment_unit
+from .units import second_moment_unit, shown_in
 
 
 def render_report(measurement: Measurement, *, result: Mapping[str, Any], still_png: bytes | None) -> str:
@@ -57,7 +57,12 @@ def render_page(template: str, **context: Any) -> str:
     )
     page = _environment().get_template(template)
     rendered: str = page.render(
-        policy=policy, css=Markup(style), script=Markup(script), inline=inline_svg, **context
+        policy=policy,
+        css=Markup(style),
+        script=Markup(script),
+        inline=inline_svg,
+        degree=shown_in("rad", 1.0)[1],
+        **context,
     )
     return rendered
 

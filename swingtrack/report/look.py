@@ -14,7 +14,7 @@ from threading import RLock
 from typing import Any
 
 INK = "#22282e"
-FAINT = "#8d949b"
+FAINT = "#848b92"
 PAPER = "#fcfbf7"
 SHADE = "#ece7dc"
 DATA = "#1b6a8c"  # what was measured
@@ -84,11 +84,13 @@ def plain(ax: Any, x: str, y: str) -> Any:
     return ax
 
 
-def key(ax: Any, **place: Any) -> None:
-    """The legend, without a box, where there is something to tell apart."""
+def key(ax: Any, *, enlarged: float = 1.0, **place: Any) -> None:
+    """The legend, without a box, where there is something to tell apart; marks drawn as dust are `enlarged` in it."""
     handles, _ = ax.get_legend_handles_labels()
     if handles:
-        ax.legend(frameon=False, fontsize=8.5, labelcolor=INK, handlelength=1.6, markerscale=1.6, **place)
+        ax.legend(
+            frameon=False, fontsize=8.5, labelcolor=INK, handlelength=1.6, markerscale=enlarged, **place
+        )
 
 
 def say(ax: Any, text: str) -> None:

@@ -84,16 +84,20 @@ def show_entry(entry: Mapping[str, Any] | None, unit: str = "", *, scale: float 
     return show(Quantity(float(entry["value"]), bare, str(entry["unit"])), unit, scale=scale, k=k)
 
 
-def bare(value: float | None, digits: int = 3, unit: str = "") -> str:
+def bare(value: float | None, digits: int = 3, unit: str = "", *, floor: float = 0.0) -> str:
     """A number that has no uncertainty of its own, to so many significant digits, trailing zeros kept.
+
+    Sizes below `floor` are shown as "< floor": dust of the arithmetic is no finding.
 
     Examples
     --------
-    >>> bare(0.4, unit="Hz"), bare(1234567.0, 4), bare(2.5e-7, 2)
-    ('0.400 Hz', '1234567', '2.5·10⁻⁷')
+    >>> bare(0.4, unit="Hz"), bare(1234567.0, 4), bare(2.5e-7, 2), bare(7e-13, 2, "ms", floor=1e-3)
+    ('0.400 Hz', '1234567', '2.5·10⁻⁷', '< 0.001 ms')
     """
     if value is None or not math.isfinite(value):
         return UNKNOWN
+    if abs(value) < floor:
+        return f"< {bare(floor, 1, unit)}"
     if value == 0.0:
         return _with_unit("0", pretty(unit))
     exponent = _first_place(abs(value), digits)
@@ -144,6 +148,20 @@ def change(relative: float, u: float = 0.0) -> str:
         value, doubt = rounded(100.0 * relative, 100.0 * u)
         return f"({_signed(value)} ± {doubt}) %"
     return f"{_signed(_at(100.0 * relative, _place(abs(100.0 * relative))))} %"
+
+
+def deviation(relative: float) -> str:
+    """How far one run lies off, in percent with its sign, to ten parts in a million: comparable down a column.
+
+    Examples
+    --------
+    >>> deviation(9.8e-5), deviation(-0.0124)
+    ('+0.010 %', '−1.240 %')
+    """
+    text = _at(100.0 * relative, -3)
+    if float(text) == 0.0:
+        return "0.000 %"
+    return f"{_signed(text) if relative < 0.0 else '+' + text} %"
 
 
 def pretty(unit: str) -> str:

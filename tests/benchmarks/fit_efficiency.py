@@ -3,8 +3,9 @@
     python -m tests.benchmarks.fit_efficiency [--count N] [--seed S]
 
 Damped swings on a torsion wire (the model whose bound has a closed form): 300 to 18000 samples at uneven times,
-amplitude over noise 3 to 1000, white noise. The bound is the Fisher matrix of references.md section 1, computed
-here from its columns, not by the fit.
+amplitude over noise 3 to 1000, white noise. The bound is the inverse of the Fisher matrix
+JᵀJ/s², computed here from the model's derivatives, not by the fit (Kay, Fundamentals of Statistical Signal Processing:
+Estimation Theory, 1993, ch. 3; from memory).
 """
 
 from __future__ import annotations
