@@ -251,7 +251,8 @@ class Follower:
     def _find_again(self, t_s: float, picture: Piece) -> Located | None:
         """After a loss: near where the swing has taken it, later anywhere on its path."""
         model = self.model
-        assert model is not None and self._lost_since is not None
+        assert model is not None
+        assert self._lost_since is not None
         gone = t_s - self._lost_since
         if self._lost_frames > 60 and self._lost_frames % 4:
             return None  # a long absence: every fourth frame is often enough to see it come back

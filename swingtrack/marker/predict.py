@@ -77,7 +77,7 @@ class Predictor:
         """As `next`, from the last swing and a half as a whole; holds over a long gap."""
         w = self.omega
         if w is None or len(self.places) < 8:
-            t, x, y = self.places[-1]
+            _t, x, y = self.places[-1]
             return x, y, 0.0, 0.0
         data = np.array(self.places)
         # The pictures just before a loss are the ones that may have been led astray.

@@ -20,7 +20,10 @@ from .piece import Piece
 SIDE = 33  # of the square in pixels
 MOST_SPOTS = 5
 FEWEST_AGREEING = 2  # one spot alone may sit on the article itself
-ALIKE_PX, ALIKE_SHARE = 0.2, 0.35  # two fixed spots differ by noise, and by the turn and scale of the camera's motion
+ALIKE_PX, ALIKE_SHARE = (
+    0.2,
+    0.35,
+)  # two fixed spots differ by noise, and by the turn and scale of the camera's motion
 LEAST_APART = 0.3  # of the picture's width, for a turn to be worth taking from two spots
 LONGEST_STEP = 12.0  # px from one frame to the next; more is not a shake but a picture of something else
 

@@ -6,30 +6,40 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
-    from .motion import Damping, mechanism_of, simulate_swing
+    from .mechanism import mechanism_of
+    from .motion import Damping, SwingTruth, simulate_swing
+    from .random_scenes import RandomScene, random_scene
     from .rehearsal import Truth, rehearse_clip
-    from .settings import Film, RehearsalSettings, Stage, Sway
+    from .settings import Film, RehearsalSettings, Roll, Stage, Sway
 
 _HOMES = {
     "Damping": "motion",
-    "mechanism_of": "motion",
-    "simulate_swing": "motion",
-    "Truth": "rehearsal",
-    "rehearse_clip": "rehearsal",
     "Film": "settings",
+    "RandomScene": "random_scenes",
     "RehearsalSettings": "settings",
+    "Roll": "settings",
     "Stage": "settings",
     "Sway": "settings",
+    "SwingTruth": "motion",
+    "Truth": "rehearsal",
+    "mechanism_of": "mechanism",
+    "random_scene": "random_scenes",
+    "rehearse_clip": "rehearsal",
+    "simulate_swing": "motion",
 }
 
 __all__ = [
     "Damping",
     "Film",
+    "RandomScene",
     "RehearsalSettings",
+    "Roll",
     "Stage",
     "Sway",
+    "SwingTruth",
     "Truth",
     "mechanism_of",
+    "random_scene",
     "rehearse_clip",
     "simulate_swing",
 ]

@@ -1,21 +1,23 @@
-"""Swings by integration of the equation of motion, written apart from `inertia/` so that one can test the other.
-
-Everything here is in plain mechanics (masses, heights, torques), never in the reduced form that the fit uses.
-"""
+"""Swings by integration of the equation of motion, released from rest."""
 
 from __future__ import annotations
 
 import math
 from collections.abc import Callable
 from dataclasses import dataclass, field
+from typing import Any
 
 import numpy as np
-from scipy.integrate import solve_ivp
 
-from ..errors import BadInput, BadRig
-from ..records import Floats, Rig
+from ..errors import BadInput
+from ..records import Floats
+from .mechanism import Mechanism
 
-TIGHT = {"rtol": 1e-11, "atol": 1e-13, "method": "DOP853"}
+TIGHT = {"rtol": 1e-12, "atol": 1e-15, "method": "DOP853"}
+# The solver's interpolation between its steps is of lower order than the steps: short ones keep it to 1e-10 rad.
+LONGEST_STEP = 1.0 / 20.0  # of a period
+
+Piece = tuple[float, Callable[[Floats], Floats]]
 
 
 @dataclass(frozen=True)
@@ -29,132 +31,102 @@ class Damping:
     quadratic: float = 0.0
     dry_rad_per_s2: float = 0.0
 
+    def __post_init__(self) -> None:
+        for name in ("rate_per_s", "quadratic", "dry_rad_per_s2"):
+            value = getattr(self, name)
+            if not (math.isfinite(value) and value >= 0.0):
+                raise BadInput(f"A damping {name} of {value:g} was asked for.", "Needed: zero or more.")
+
+    def local_rate(self, amplitude_rad: float, omega: float) -> float:
+        """Relative loss of amplitude per second at an amplitude: γ + (4β ω A)/(3π) + 2d/(π ω A).
+
+        First-order averaging: the energy lost in a cycle of a harmonic swing over twice its energy.
+        """
+        squared = 4.0 * self.quadratic * omega * amplitude_rad / (3.0 * math.pi)
+        dry = 2.0 * self.dry_rad_per_s2 / (math.pi * omega * amplitude_rad)
+        return self.rate_per_s + squared + dry
+
 
 @dataclass(frozen=True, eq=False)
-class Mechanism:
-    """A body with one coordinate q: torque(q) from height or wire, inertia(q), and half its slope.
+class SwingTruth:
+    """A swing let go at rest at `release_s`; `angle(t)` in rad for any times, held still before the release.
 
-    I(q) q'' + ½ I'(q) q'² = torque(q) − losses · I(0).
+    Parameters
+    ----------
+    period_s : float
+        Of small undamped swings.
+    decay_rate_per_s : float
+        γ of the viscous part; `damping.local_rate` gives the whole at an amplitude.
+    moment_kg_m2 : float
+        Of the article about the axis through its centre of mass.
+    amplitude_start_rad : float
+    damping : Damping
+    release_s, ends_s : float
+        The motion is known up to `ends_s`.
     """
 
-    inertia: Callable[[float], float]
-    half_slope: Callable[[float], float]
-    torque: Callable[[float], float]
-    at_rest: float
-    stiffness: float
-
-    @property
-    def period_s(self) -> float:
-        """Small undamped swings: 2π √(I(0)/stiffness)."""
-        return 2.0 * math.pi * math.sqrt(self.at_rest / self.stiffness)
-
-
-def mechanism_of(rig: Rig, moment: float) -> Mechanism:
-    """The plain mechanics of the rig with an article of the given moment of inertia, kg m²."""
-    x = {key: q.value for key, q in rig.suspension.dimensions.items()}
-    kind = rig.suspension.kind
-    if kind == "torsion-wire":
-        kappa = x["stiffness"] if "stiffness" in x else _wire(x)
-        return Mechanism(lambda q: moment, lambda q: 0.0, lambda q: -kappa * q, moment, kappa)
-    if rig.article.mass is None:
-        raise BadRig("article.mass is missing.", "Needed: the mass of the article that is rehearsed.")
-    mass = rig.article.mass.value + math.fsum(weight.mass.value for weight in rig.article.added)
-    g = _gravity(rig)
-    if kind == "knife-edge":
-        arm = x["pivot_to_centre"]
-        about_edge = moment + mass * arm**2
-        pull = mass * g * arm
-        return Mechanism(lambda q: about_edge, lambda q: 0.0, lambda q: -pull * math.sin(q), about_edge, pull)
-    if kind in ("bifilar", "trifilar"):
-        return _on_strings(x, mass, g, moment)
-    raise BadRig(
-        f"A {kind} suspension can't be rehearsed.", "Needed: bifilar, trifilar, torsion-wire or knife-edge."
-    )
-
-
-def _on_strings(x: dict[str, float], mass: float, g: float, moment: float) -> Mechanism:
-    """A body on equal strings between circles of radii a and b: it turns by q and rises by z(q)."""
-    if "upper_spacing" in x:
-        a, b = 0.5 * x["upper_spacing"], 0.5 * x.get("lower_spacing", x["upper_spacing"])
-    else:
-        a, b = x["upper_radius"], x.get("lower_radius", x["upper_radius"])
-    length_2 = x["drop"] ** 2 + (a - b) ** 2 if "drop" in x else x["length"] ** 2
-    if length_2 <= (a - b) ** 2:
-        raise BadRig("The strings are shorter than the spacings allow.", "Needed: longer strings.")
-    offset = x.get("centre_offset", 0.0)
-    if offset:
-        factor = math.sqrt((a * b - offset**2) / (a * b))
-        length_2 += (a * factor - b * factor) ** 2 - (a - b) ** 2
-        a, b = a * factor, b * factor
-
-    def height(q: float) -> float:
-        return math.sqrt(length_2 - a * a - b * b + 2.0 * a * b * math.cos(q))
-
-    def slope(q: float) -> float:  # dz/dq of the body's height z = −height
-        return a * b * math.sin(q) / height(q)
-
-    def curve(q: float) -> float:
-        h = height(q)
-        return a * b * math.cos(q) / h + (a * b * math.sin(q)) ** 2 / h**3
-
-    return Mechanism(
-        inertia=lambda q: moment + mass * slope(q) ** 2,
-        half_slope=lambda q: mass * slope(q) * curve(q),
-        torque=lambda q: -mass * g * slope(q),
-        at_rest=moment,
-        stiffness=mass * g * a * b / math.sqrt(length_2 - (a - b) ** 2),
-    )
-
-
-def _wire(x: dict[str, float]) -> float:
-    return math.pi * x["shear_modulus"] * x["wire_diameter"] ** 4 / (32.0 * x["length"])
-
-
-def _gravity(rig: Rig) -> float:
-    """Gravity of the rehearsed place: as given, by the 1980 formula at a latitude, or 9.81."""
-    if rig.gravity is not None:
-        return rig.gravity.value
-    if rig.latitude is None:
-        return 9.81
-    s = math.sin(rig.latitude.value)
-    s2 = math.sin(2.0 * rig.latitude.value)
-    height = rig.altitude.value if rig.altitude is not None else 0.0
-    return 9.780327 * (1.0 + 0.0053024 * s * s - 0.0000058 * s2 * s2) - 3.086e-6 * height
-
-
-@dataclass(frozen=True, eq=False)
-class SimulatedSwing:
-    """A swing let go at rest at `release_s`; `angle(t)` in rad for any times, held still before release."""
-
     period_s: float
-    amplitude_rad: float
+    decay_rate_per_s: float
+    moment_kg_m2: float
+    amplitude_start_rad: float
     damping: Damping
     release_s: float
-    pieces: tuple[tuple[float, Callable[[Floats], Floats]], ...] = field(repr=False)
-    ends_s: float = math.inf
+    ends_s: float
+    pieces: tuple[Piece, ...] = field(repr=False)
 
     def angle(self, t_s: Floats) -> Floats:
-        """Angle, rad, at times (n,)."""
-        t = np.atleast_1d(np.asarray(t_s, dtype=np.float64)) - self.release_s
-        angle = np.full(t.shape, self.amplitude_rad)
+        """Angle, rad, at times of any shape."""
+        return self._state(t_s, 0)
+
+    def speed(self, t_s: Floats) -> Floats:
+        """Angular speed, rad/s, at times of any shape."""
+        return self._state(t_s, 1)
+
+    def _state(self, t_s: Floats, part: int) -> Floats:
+        given = np.atleast_1d(np.asarray(t_s, dtype=np.float64))
+        if given.size and float(given.max()) > self.ends_s + 1e-9:
+            raise BadInput(
+                f"The swing at {float(given.max()):.6g} s was asked for.",
+                f"Needed: a time up to {self.ends_s:.6g} s, where its integration ends.",
+            )
+        t = given.ravel() - self.release_s
+        found = np.full(t.shape, self.amplitude_start_rad if part == 0 else 0.0)
         starts = np.array([start for start, _ in self.pieces])
         which = np.searchsorted(starts, t, side="right") - 1
         for number in np.unique(which[which >= 0]):
             inside = which == number
-            angle[inside] = self.pieces[number][1](t[inside])
-        return angle
+            found[inside] = self.pieces[number][1](t[inside])[part]
+        return found.reshape(given.shape)
 
 
 def simulate_swing(
     mechanism: Mechanism, *, amplitude_rad: float, damping: Damping, duration_s: float, release_s: float = 0.0
-) -> SimulatedSwing:
+) -> SwingTruth:
     """Integrate the swing from rest at `amplitude_rad` for `duration_s` after the release.
 
-    Dry friction is integrated piece by piece between turning points, where its sign changes; the body sticks where
-    the torque at a turning point is below the friction.
+    I(q) q'' + ½ I'(q) q'² = torque(q) − I(0) (2γ q' + β q'|q'| + d sign q'), by Dormand and Prince's method of
+    order 8. Dry friction is integrated piece by piece between turning points, where its sign changes; the body sticks
+    where the torque at a turning point is below the friction.
+
+    Raises
+    ------
+    BadInput
+        The duration is not over zero, or the release turns the article beyond what its strings allow.
+
+    Examples
+    --------
+    >>> from swingtrack.rehearse.mechanism import _torsion
+    >>> swing = simulate_swing(
+    ...     _torsion(1.0, 1.0, 1.0), amplitude_rad=0.1, damping=Damping(0.0), duration_s=7.0
+    ... )
+    >>> round(float(swing.angle(np.array([math.pi]))[0]), 12)
+    -0.1
     """
+    from scipy.integrate import solve_ivp
+
     if not (math.isfinite(duration_s) and duration_s > 0.0):
         raise BadInput(f"A swing of {duration_s:g} s was asked for.", "Needed: a duration over zero.")
+    _check_reach(mechanism, amplitude_rad)
 
     def rates(_t: float, state: Floats, sign: float) -> list[float]:
         q, v = float(state[0]), float(state[1])
@@ -162,16 +134,46 @@ def simulate_swing(
         torque = mechanism.torque(q) - mechanism.half_slope(q) * v * v - mechanism.at_rest * loss
         return [v, torque / mechanism.inertia(q)]
 
-    pieces: list[tuple[float, Callable[[Floats], Floats]]] = []
+    step = mechanism.period_s * LONGEST_STEP
     if damping.dry_rad_per_s2 == 0.0:
         solved = solve_ivp(
-            rates, (0.0, duration_s), [amplitude_rad, 0.0], args=(0.0,), dense_output=True,
-            max_step=mechanism.period_s / 8.0, **TIGHT,
+            rates, (0.0, duration_s), [amplitude_rad, 0.0], args=(0.0,), dense_output=True, max_step=step, **TIGHT
         )  # fmt: skip
-        pieces.append((0.0, lambda t, s=solved.sol: s(t)[0]))
+        pieces = [(0.0, _reader(solved.sol))]
     else:
         pieces = _dry_pieces(mechanism, damping, rates, amplitude_rad, duration_s)
-    return SimulatedSwing(mechanism.period_s, amplitude_rad, damping, release_s, tuple(pieces))
+    return SwingTruth(
+        period_s=mechanism.period_s,
+        decay_rate_per_s=damping.rate_per_s,
+        moment_kg_m2=mechanism.moment_kg_m2,
+        amplitude_start_rad=amplitude_rad,
+        damping=damping,
+        release_s=release_s,
+        ends_s=release_s + duration_s,
+        pieces=tuple(pieces),
+    )
+
+
+def _check_reach(mechanism: Mechanism, amplitude_rad: float) -> None:
+    """Strings shorter than the spacing go taut before the article is turned that far."""
+    try:
+        pull = mechanism.torque(amplitude_rad)
+    except ValueError:
+        pull = math.nan
+    if not (math.isfinite(pull) and pull * amplitude_rad < 0.0):
+        raise BadInput(
+            f"Released at {math.degrees(amplitude_rad):.1f}° the article would not swing back.",
+            "Needed: an amplitude within the reach of its strings, under 180°.",
+            "Start at 5° to 15°.",
+        )
+
+
+def _reader(solution: Any) -> Callable[[Floats], Floats]:
+    return lambda t: np.asarray(solution(t), dtype=np.float64)
+
+
+def _stuck(angle: float) -> Callable[[Floats], Floats]:
+    return lambda t: np.stack([np.full(t.shape, angle), np.zeros(t.shape)])
 
 
 def _dry_pieces(
@@ -180,25 +182,27 @@ def _dry_pieces(
     rates: Callable[..., list[float]],
     amplitude: float,
     duration: float,
-) -> list[tuple[float, Callable[[Floats], Floats]]]:
+) -> list[Piece]:
+    from scipy.integrate import solve_ivp
+
     def turned(_t: float, state: Floats, _sign: float) -> float:
         return float(state[1])
 
     turned.terminal = True  # type: ignore[attr-defined]
-    pieces: list[tuple[float, Callable[[Floats], Floats]]] = []
+    pieces: list[Piece] = []
     t, q = 0.0, amplitude
     while t < duration:
         pull = mechanism.torque(q) / mechanism.at_rest
         if abs(pull) <= damping.dry_rad_per_s2:
-            pieces.append((t, lambda times, stuck=q: np.full(times.shape, stuck)))
+            pieces.append((t, _stuck(q)))
             break
         sign = math.copysign(1.0, pull)
         turned.direction = -sign  # type: ignore[attr-defined]
         solved = solve_ivp(
             rates, (t, duration + mechanism.period_s), [q, 0.0], args=(sign,), dense_output=True, events=turned,
-            max_step=mechanism.period_s / 8.0, first_step=mechanism.period_s * 1e-4, **TIGHT,
+            max_step=mechanism.period_s * LONGEST_STEP, first_step=mechanism.period_s * 1e-4, **TIGHT,
         )  # fmt: skip
-        pieces.append((t, lambda times, s=solved.sol: s(times)[0]))
+        pieces.append((t, _reader(solved.sol)))
         if not solved.t_events[0].size:
             break
         t, q = float(solved.t_events[0][0]), float(solved.y_events[0][0][0])

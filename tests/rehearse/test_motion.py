@@ -10,9 +10,7 @@ import numpy as np
 import pytest
 from scipy.special import ellipk
 
-from swingtrack.rehearse import Damping, Film, RehearsalSettings, Stage, mechanism_of, rehearse_clip, simulate_swing
-from swingtrack.rehearse.camera import camera_for
-from swingtrack.rehearse.scene import Pose, draw_dot
+from swingtrack.rehearse import Damping, Film, RehearsalSettings, mechanism_of, rehearse_clip, simulate_swing
 from swingtrack.rig import rig_from_mapping
 
 PENDULUM = {
@@ -53,7 +51,9 @@ def test_bifilar_period_against_the_table() -> None:
 
 def test_dry_friction_takes_the_same_from_each_swing() -> None:
     # exact: A drops by 4 d/ω0² a cycle, straight in time, and sticks in the end
-    rig = rig_from_mapping({"article": {}, "suspension": {"kind": "torsion-wire", "stiffness": "0.02 N m/rad"}})
+    rig = rig_from_mapping(
+        {"article": {}, "suspension": {"kind": "torsion-wire", "stiffness": "0.02 N m/rad"}}
+    )
     mechanism = mechanism_of(rig, 0.02)
     swing = simulate_swing(mechanism, amplitude_rad=0.5, damping=Damping(0.0, 0.0, 0.01), duration_s=100.0)
     period = mechanism.period_s
@@ -65,26 +65,18 @@ def test_dry_friction_takes_the_same_from_each_swing() -> None:
 def test_quadratic_damping_against_averaging() -> None:
     # A = A0/(1 + c A0 t), c = 4 β ω0/(3π): 0.789471 after 10 cycles at β = 0.01, A0 = 1 (docs/theory.md, Damping)
     rig = rig_from_mapping({"article": {}, "suspension": {"kind": "torsion-wire", "stiffness": "1 N m/rad"}})
-    swing = simulate_swing(mechanism_of(rig, 1.0), amplitude_rad=1.0, damping=Damping(0.0, 0.01, 0.0), duration_s=70.0)
+    swing = simulate_swing(
+        mechanism_of(rig, 1.0), amplitude_rad=1.0, damping=Damping(0.0, 0.01, 0.0), duration_s=70.0
+    )
     t = np.linspace(62.0, 63.7, 5001)
     assert np.abs(swing.angle(t)).max() == pytest.approx(0.789471, abs=2e-5)
 
 
-@pytest.mark.parametrize("offset", [0.0, 0.013, 0.037])
-def test_the_drawn_dot_is_where_it_says(offset: float) -> None:
-    stage, film = Stage(dot_bgr=(255, 255, 255)), Film()
-    camera = camera_for(stage, film)
-    picture = np.zeros((film.height, film.width, 3), dtype=np.uint8)
-    truth = draw_dot(picture, camera, stage, [Pose(0.1 + offset)])
-    weight = picture[..., 0].astype(float)
-    rows, columns = np.mgrid[0 : film.height, 0 : film.width]
-    centroid = np.array([(weight * columns).sum(), (weight * rows).sum()]) / weight.sum()
-    np.testing.assert_allclose(centroid, truth, atol=0.006)
-
-
 def test_the_file_holds_the_true_times_and_the_turn(tmp_path: Path) -> None:
     film = Film(width=320, height=240, duration_s=1.5, uneven_ms=2.0, dropped_share=0.1)
-    truth = rehearse_clip(rig_from_mapping(STRINGS), tmp_path / "c.mp4", settings=RehearsalSettings(film=film))
+    truth = rehearse_clip(
+        rig_from_mapping(STRINGS), tmp_path / "c.mp4", settings=RehearsalSettings(film=film)
+    )
     with av.open(str(tmp_path / "c.mp4")) as container:
         times = np.array([float(frame.pts * frame.time_base) for frame in container.decode(video=0)])
     np.testing.assert_allclose(times - times[0], truth.t_s, atol=1e-9)
