@@ -103,7 +103,7 @@ def _show_in_notebooks() -> None:
         return notebook_html(record)
 
     for kind in (Measurement, Swing, Inertia, Stopwatch, Path, Quantity):
-        kind._repr_html_ = table  # type: ignore[attr-defined]
+        setattr(kind, "_repr_html_", table)  # noqa: B010 - to a type checker the records have no such attribute
 
 
 _show_in_notebooks()

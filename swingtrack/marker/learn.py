@@ -177,7 +177,7 @@ def _relocate(
 ) -> Floats:
     places = places.copy()
     for i in which:
-        found = locate(glimpses[i].piece, model, *places[i], tuple(velocity[i]))
+        found = locate(glimpses[i].piece, model, places[i, 0], places[i, 1], (velocity[i, 0], velocity[i, 1]))
         if (
             found is not None
             and np.hypot(found.x_px - places[i, 0], found.y_px - places[i, 1]) < 0.5 * model.radius_px + 1
@@ -213,7 +213,10 @@ def _choose_exposure(
     def left(exposure: float) -> float:
         model.exposure_s = exposure
         model.forget()
-        found = [locate(glimpses[i].piece, model, *places[i], tuple(velocity[i])) for i in fast]
+        found = [
+            locate(glimpses[i].piece, model, places[i, 0], places[i, 1], (velocity[i, 0], velocity[i, 1]))
+            for i in fast
+        ]
         misfits = [f.misfit if f is not None and f.gain > 0.2 else 9.0 for f in found]
         return float(np.median(misfits))
 
@@ -254,8 +257,8 @@ def _measure_offset(
     steps, sizes = [], []
     for i in which:
         piece = glimpses[i].piece
-        luma = locate(piece, luma_only, *places[i], tuple(velocity[i]))
-        alone = locate_chroma(piece, model, *places[i], tuple(velocity[i]))
+        luma = locate(piece, luma_only, places[i, 0], places[i, 1], (velocity[i, 0], velocity[i, 1]))
+        alone = locate_chroma(piece, model, places[i, 0], places[i, 1], (velocity[i, 0], velocity[i, 1]))
         if luma is not None and alone is not None and luma.settled:
             steps.append((alone[0] - luma.x_px, alone[1] - luma.y_px))
             sizes.append(np.sqrt(luma.var_x + luma.var_y))
