@@ -5,7 +5,18 @@ from __future__ import annotations
 import os
 from pathlib import Path
 
-COMMANDS = ("measure", "follow", "fit", "inertia", "stopwatch", "solids", "combine", "plan", "rehearse", "page")
+COMMANDS = (
+    "measure",
+    "follow",
+    "fit",
+    "inertia",
+    "stopwatch",
+    "solids",
+    "combine",
+    "plan",
+    "rehearse",
+    "page",
+)
 
 
 def command_page() -> str:
@@ -17,10 +28,22 @@ def command_page() -> str:
     from swingtrack.cli.app import app
 
     runner = CliRunner()
-    parts = ["# Commands", "", "Made from the program's own help by `python -m docs.make_commands`; a test holds the two together.", ""]
+    parts = [
+        "# Commands",
+        "",
+        "Made from the program's own help by `python -m docs.make_commands`; a test holds the two together.",
+        "",
+    ]
     for command in COMMANDS:
         text = runner.invoke(app, [command, "--help"], prog_name="swingtrack").output.strip()
-        parts += [f"## swingtrack {command}", "", "```text", *[line.rstrip() for line in text.splitlines()], "```", ""]
+        parts += [
+            f"## swingtrack {command}",
+            "",
+            "```text",
+            *[line.rstrip() for line in text.splitlines()],
+            "```",
+            "",
+        ]
     return "\n".join(parts)
 
 

@@ -37,7 +37,7 @@ SAMPLES = (
             moment_kg_m2=0.1132,
             amplitude_rad=math.radians(8.0),
             damping=Damping(rate_per_s=0.008),
-            film=Film(duration_s=30.0, crf=20, uneven_ms=0.4),
+            film=Film(duration_s=30.0, bitrate_mbps=0.48, noise=1.5, uneven_ms=0.4),
             stage=Stage(distance_m=2.6, dot_radius_m=0.78, dot_diameter_m=0.06),
             seed=11,
         ),
@@ -51,7 +51,7 @@ SAMPLES = (
             amplitude_rad=math.radians(9.0),
             damping=Damping(rate_per_s=0.012, quadratic=0.02),
             release_s=1.5,
-            film=Film(duration_s=30.0, crf=20, uneven_ms=0.4, dropped_share=0.01),
+            film=Film(duration_s=30.0, bitrate_mbps=0.48, noise=1.5, uneven_ms=0.4, dropped_share=0.01),
             stage=Stage(
                 camera="side", distance_m=1.0, dot_radius_m=0.16, dot_diameter_m=0.012, dot_bgr=(50, 225, 245)
             ),
@@ -66,7 +66,7 @@ SAMPLES = (
             amplitude_rad=math.radians(14.0),
             damping=Damping(rate_per_s=0.01),
             sway=(Sway(amplitude_m=0.002, frequency_hz=math.sqrt(9.8094 / 1.35) / (2.0 * math.pi)),),
-            film=Film(duration_s=30.0, crf=20, uneven_ms=0.4),
+            film=Film(duration_s=30.0, bitrate_mbps=0.48, noise=1.5, uneven_ms=0.4),
             stage=Stage(
                 distance_m=1.6, dot_radius_m=0.40, dot_diameter_m=0.03, dot_bgr=(235, 235, 240), clutter=8
             ),
@@ -89,7 +89,7 @@ def main(names: list[str]) -> None:
         assert moment is not None
         answer = {
             "period_s": truth.period_s,
-            "decay_rate_per_s": truth.decay_rate_per_s,
+            "decay_rate_per_s": local_decay_rate(sample.settings, truth.period_s),
             "moment_kg_m2": moment,
             "amplitude_start_deg": math.degrees(truth.amplitude_rad),
             "radius_of_gyration_m": math.sqrt(moment / rig.article.mass.value) if rig.article.mass else None,
@@ -99,6 +99,18 @@ def main(names: list[str]) -> None:
         )
         if sample.trials:
             write_trials(sample, mechanism_of(rig, moment).period_s)
+
+
+def local_decay_rate(settings: RehearsalSettings, period_s: float) -> float:
+    """Decay rate, 1/s, at the clip's mean amplitude: γ + 4βω0A/(3π) (docs/theory.md, Damping)."""
+    gamma, beta = settings.damping.rate_per_s, settings.damping.quadratic
+    omega = 2.0 * math.pi / period_s
+    c = 4.0 * beta * omega / (3.0 * math.pi)
+    t = np.linspace(0.0, settings.film.duration_s - settings.release_s, 2001)
+    left = np.exp(-gamma * t)
+    start = settings.amplitude_rad
+    amplitude = gamma * start * left / (gamma + c * start * (1.0 - left))
+    return float(gamma + c * amplitude.mean())
 
 
 def write_trials(sample: Sample, period_s: float) -> None:

@@ -74,7 +74,9 @@ def read_goal(file: str | Path) -> Goal:
     checked = validate_tables(_GoalFile, read_toml(file), name=str(file))
     article, bench, camera = checked.article, checked.bench, checked.camera
     mass = article.mass.value
-    size = article.size.value if article.size else math.sqrt(12.0 * article.moment.value / mass)  # a uniform rod's
+    size = (
+        article.size.value if article.size else math.sqrt(12.0 * article.moment.value / mass)
+    )  # a uniform rod's
     return Goal(
         name=article.name,
         mass=article.mass,

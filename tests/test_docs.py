@@ -19,14 +19,20 @@ def codes_in_the_program() -> set[str]:
     for file in PACKAGE.rglob("*.py"):
         for node in ast.walk(ast.parse(file.read_text(encoding="utf-8"))):
             if isinstance(node, ast.Call) and getattr(node.func, "id", "") == "Doubt":
-                first = node.args[0] if node.args else next((k.value for k in node.keywords if k.arg == "code"), None)
+                first = (
+                    node.args[0]
+                    if node.args
+                    else next((k.value for k in node.keywords if k.arg == "code"), None)
+                )
                 if isinstance(first, ast.Constant):
                     found.add(str(first.value))
     return found
 
 
 def test_every_warning_code_is_documented_and_no_other() -> None:
-    documented = set(re.findall(r"^\| `([a-z-]+)` \|", (REPOSITORY / "docs" / "warnings.md").read_text(), re.M))
+    documented = set(
+        re.findall(r"^\| `([a-z-]+)` \|", (REPOSITORY / "docs" / "warnings.md").read_text(), re.M)
+    )
     assert documented == codes_in_the_program()
 
 
@@ -37,14 +43,20 @@ def test_the_command_page_is_the_programs_own_help() -> None:
 
 
 def test_links_between_documents_lead_somewhere() -> None:
-    for file in [*REPOSITORY.glob("*.md"), *(REPOSITORY / "docs").rglob("*.md"), *(REPOSITORY / "samples").glob("*.md")]:
+    for file in [
+        *REPOSITORY.glob("*.md"),
+        *(REPOSITORY / "docs").rglob("*.md"),
+        *(REPOSITORY / "samples").glob("*.md"),
+    ]:
         for target in re.findall(r"\]\((?!https?:|#)([^)#]+)", file.read_text()):
             assert (file.parent / target).exists(), f"{file.name}: {target}"
 
 
 def readme_commands() -> list[str]:
     text = (REPOSITORY / "samples" / "README.md").read_text()
-    return [line for block in re.findall(r"```sh\n(.*?)```", text, re.S) for line in block.splitlines() if line]
+    return [
+        line for block in re.findall(r"```sh\n(.*?)```", text, re.S) for line in block.splitlines() if line
+    ]
 
 
 @pytest.mark.slow
@@ -53,7 +65,12 @@ def test_commands_of_the_samples_page_run(command: str, tmp_path: Path) -> None:
     words = command.replace("--out results", f"--out {tmp_path}").split()
     assert words[0] == "swingtrack"
     done = subprocess.run(
-        [sys.executable, "-m", *words], capture_output=True, text=True, cwd=REPOSITORY, check=False, timeout=300
+        [sys.executable, "-m", *words],
+        capture_output=True,
+        text=True,
+        cwd=REPOSITORY,
+        check=False,
+        timeout=300,
     )
     assert done.returncode == 0, done.stderr
 

@@ -17,7 +17,11 @@ from swingtrack.series_file import SeriesColumns, read_series
 def paddle_rig(camera: str) -> Rig:
     return rig_from_mapping(
         {
-            "article": {"name": "short shaft", "mass": "0.612 kg ± 0.5 g", "expected_moment": "0.0093 kg m^2"},
+            "article": {
+                "name": "short shaft",
+                "mass": "0.612 kg ± 0.5 g",
+                "expected_moment": "0.0093 kg m^2",
+            },
             "suspension": {"kind": "bifilar", "length": "0.804 m ± 1 mm", "upper_spacing": "320 mm ± 0.5 mm"},
             "place": {"gravity": "9.8094 m/s^2 ± 0.0002 m/s^2"},
             "view": {"from": camera, "dot_radius": "300 mm ± 1 mm", "dot_diameter": "20 mm ± 0.1 mm"},
@@ -68,7 +72,11 @@ def test_a_real_rod_on_two_strings(real_data: Path) -> None:
     rig = rig_from_mapping(
         {
             "article": {"mass": "1 kg ± 0 g"},
-            "suspension": {"kind": "bifilar", "length": "0.974025 m ± 1 mm", "upper_spacing": "150 mm ± 0.2 mm"},
+            "suspension": {
+                "kind": "bifilar",
+                "length": "0.974025 m ± 1 mm",
+                "upper_spacing": "150 mm ± 0.2 mm",
+            },
             "place": {"gravity": "9.788 m/s^2 ± 0.001 m/s^2"},
         }
     )

@@ -47,7 +47,10 @@ def break_bytes(data: bytes, rng: np.random.Generator) -> bytes:
                 broken[at:at] = broken[at : at + int(rng.integers(1, 2000))]
             case 3:
                 other = int(rng.integers(0, len(broken) - 8))
-                broken[at : at + 8], broken[other : other + 8] = broken[other : other + 8], broken[at : at + 8]
+                broken[at : at + 8], broken[other : other + 8] = (
+                    broken[other : other + 8],
+                    broken[at : at + 8],
+                )
             case 4:
                 number = int(rng.choice([0, 1, 0x7FFFFFFF, 0xFFFFFFFF, 0x80000000, 16384, 65535]))
                 broken[at : at + 4] = struct.pack(">I", number)
@@ -60,11 +63,26 @@ def break_bytes(data: bytes, rng: np.random.Generator) -> bytes:
 
 def _spoil_a_box(broken: bytearray, rng: np.random.Generator) -> None:
     """An absurd number within the header boxes of an MP4, where sizes, rates, times and turns stand."""
-    names = [b"tkhd", b"mdhd", b"mvhd", b"stts", b"ctts", b"stsz", b"stsc", b"stco", b"avc1", b"elst", b"stsd", b"avcC"]
+    names = [
+        b"tkhd",
+        b"mdhd",
+        b"mvhd",
+        b"stts",
+        b"ctts",
+        b"stsz",
+        b"stsc",
+        b"stco",
+        b"avc1",
+        b"elst",
+        b"stsd",
+        b"avcC",
+    ]
     found = broken.find(names[int(rng.integers(len(names)))])
     if found >= 0:
         at = found + 4 + int(rng.integers(0, 60))
-        broken[at : at + 4] = struct.pack(">I", int(rng.choice([0, 1, 2, 0x7FFFFFFF, 0xFFFFFFFF, 0x00010000, 1 << 14])))
+        broken[at : at + 4] = struct.pack(
+            ">I", int(rng.choice([0, 1, 2, 0x7FFFFFFF, 0xFFFFFFFF, 0x00010000, 1 << 14]))
+        )
 
 
 def work_on(kind: str, file: Path, measure: bool) -> str:
@@ -146,7 +164,9 @@ def judge_files(*, count: int, seed: int, measure_share: float = 0.02) -> Counte
         place = Path(folder)
         clips = [
             write_clip(place / f"whole{i}{suffix}", Recipe(even_ticks(24), codec))
-            for i, (suffix, codec) in enumerate([(".mp4", "libx264"), (".mov", "libx264"), (".mkv", "libx264"), (".avi", "mpeg4")])
+            for i, (suffix, codec) in enumerate(
+                [(".mp4", "libx264"), (".mov", "libx264"), (".mkv", "libx264"), (".avi", "mpeg4")]
+            )
         ]
         texts = {"rig": RIG, "series": SERIES, "trials": TRIALS}
         jobs = []

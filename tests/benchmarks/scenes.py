@@ -1,6 +1,6 @@
 """Random scenes measured with no click: how often the dot is found, and whether wrong numbers come with a warning.
 
-    python -m tests.benchmarks.scenes --count 100 --seed 1000
+python -m tests.benchmarks.scenes --count 100 --seed 1000
 """
 
 from __future__ import annotations
@@ -18,8 +18,12 @@ from swingtrack.measure import measure_clip
 from swingtrack.records import Measurement
 from swingtrack.rehearse import Truth, random_scene, rehearse_clip
 
-FOUND_PX = 2.0  # rms distance from the truth (constant offset taken out) below which the right dot was followed
-WRONG_RELATIVE = 1e-3  # error of the small-swing period above which, and beyond three of its u, a number is wrong
+FOUND_PX = (
+    2.0  # rms distance from the truth (constant offset taken out) below which the right dot was followed
+)
+WRONG_RELATIVE = (
+    1e-3  # error of the small-swing period above which, and beyond three of its u, a number is wrong
+)
 
 
 @dataclass(frozen=True)
@@ -84,7 +88,9 @@ def main() -> None:
             scene = judge_scene(seed, Path(folder))
             counts[scene.outcome] += 1
             if scene.outcome != "right":
-                print(f"{scene.seed}: {scene.outcome}: {scene.detail} [{', '.join(scene.labels)}]", flush=True)
+                print(
+                    f"{scene.seed}: {scene.outcome}: {scene.detail} [{', '.join(scene.labels)}]", flush=True
+                )
     print(", ".join(f"{outcome} {number}" for outcome, number in counts.most_common()), f"of {chosen.count}")
 
 

@@ -33,7 +33,9 @@ def rig(tmp_path: Path) -> Path:
 def test_measure_a_sample_and_read_the_number(tmp_path: Path) -> None:
     expected = json.loads((SAMPLES / "paddle-above.expected.json").read_text())
     clip, rig = SAMPLES / "paddle-above.mp4", SAMPLES / "paddle-above.toml"
-    done = run("measure", clip, "--rig", rig, "--out", tmp_path, "--stopwatch", SAMPLES / "paddle-above.trials.csv")
+    done = run(
+        "measure", clip, "--rig", rig, "--out", tmp_path, "--stopwatch", SAMPLES / "paddle-above.trials.csv"
+    )
     assert done.returncode == 0, done.stderr
     assert done.stdout.startswith("moment of inertia")
     assert len(done.stdout.splitlines()) <= 25
@@ -43,7 +45,9 @@ def test_measure_a_sample_and_read_the_number(tmp_path: Path) -> None:
     for part, key in (("inertia", "moment_kg_m2"), ("swing", "period_s")):
         entry = document[part][key]
         assert abs(entry["value"] - expected[key]) < 2.0 * entry["u"]
-    assert {"path.csv", "report.html", "still.png", "swing.png", "swing.svg"} <= {f.name for f in folder.iterdir()}
+    assert {"path.csv", "report.html", "still.png", "swing.png", "swing.svg"} <= {
+        f.name for f in folder.iterdir()
+    }
     again = run("measure", clip, "--rig", rig, "--out", tmp_path)
     assert again.returncode == 2
     assert "--again" in again.stderr
@@ -125,7 +129,9 @@ def test_fit_of_many_series_prints_a_line_each(tmp_path: Path) -> None:
         file.write_text("t_s,angle_rad\n" + "\n".join(f"{a:.6f},{b:.8f}" for a, b in zip(t, y, strict=True)))
         files.append(file)
     noise_only = tmp_path / "noise.csv"
-    noise_only.write_text("t_s,angle_rad\n" + "\n".join(f"{a:.6f},{b:.8f}" for a, b in zip(t, noise, strict=True)))
+    noise_only.write_text(
+        "t_s,angle_rad\n" + "\n".join(f"{a:.6f},{b:.8f}" for a, b in zip(t, noise, strict=True))
+    )
     done = run("fit", *files, noise_only, "--json")
     assert done.returncode == 3
     lines = [json.loads(line) for line in done.stdout.splitlines()]
@@ -136,7 +142,18 @@ def test_fit_of_many_series_prints_a_line_each(tmp_path: Path) -> None:
 def test_help_lists_every_command() -> None:
     done = run("--help")
     assert done.returncode == 0
-    for command in ("measure", "follow", "fit", "inertia", "stopwatch", "solids", "combine", "plan", "rehearse", "page"):
+    for command in (
+        "measure",
+        "follow",
+        "fit",
+        "inertia",
+        "stopwatch",
+        "solids",
+        "combine",
+        "plan",
+        "rehearse",
+        "page",
+    ):
         assert command in done.stdout
 
 
