@@ -72,4 +72,6 @@ def amplitude_at(t: Floats, start: float, losses: Losses) -> Floats:
     stopped = (z < 0) & (root >= np.pi / 2)
     top = start * (1 - slowed * g / 2) - d * slowed
     bottom = 1 + slowed * (g / 2 + c * start)
-    return np.asarray(np.where(stopped | (top < 0), 0.0, np.maximum(top, 0.0) / bottom))
+    # Losses that drive (negative ones, tried on the way of a fit) may run away in finite time.
+    running = np.where(bottom > 0, np.maximum(top, 0.0) / np.where(bottom > 0, bottom, 1.0), np.inf)
+    return np.asarray(np.where(stopped | (top < 0), 0.0, running))

@@ -126,13 +126,16 @@ def _tabulate(
         if not np.all(np.isfinite(amplitudes)) or low <= 0:
             return None
         try:
-            solved = solve_half_swings(amplitudes, state.damping, restoring)
+            # A wild trial of the solver may overflow on the way; it is refused by what comes out.
+            with np.errstate(over="ignore", invalid="ignore", divide="ignore"):
+                solved = solve_half_swings(amplitudes, state.damping, restoring)
         except np.linalg.LinAlgError:
             return None
         if not np.all(np.isfinite(solved.rate)) or np.any(solved.rate <= 0):
             return None
         half = _in_amplitude(solved)
-        walk = _walk(state, half, (low, high), x_end)
+        with np.errstate(over="ignore", invalid="ignore"):
+            walk = _walk(state, half, (low, high), x_end)
         if walk is None:
             return None
         xs, found, d_xs, d_found = walk

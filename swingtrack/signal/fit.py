@@ -35,6 +35,10 @@ from swingtrack.signal.settings import FitSettings
 LEAST_SIGNIFICANCE = 4.0
 # A period known no better than this is none.
 WORST_RELATIVE = 0.03
+# Fewer free swings than this may be anything.
+FEWEST_CYCLES = 2.0
+# Unknown motions that add up to more than the swing, in a record that is noisy besides, are the noise's own.
+CROWD_SHARE = 1.0
 
 
 def fit_swing(
@@ -98,7 +102,11 @@ def fit_swing(
     rivals = [*unresolved_modes(fitted, choices), cramped_fit(fitted)]
     spread = max((_spread(fitted, rival) for rival in rivals if rival is not None), default=0.0)
     settled = Opening(fitted, opening.span, opening.knowledge)
-    return make_swing(coordinate, settled, noise_of(fitted), Rivals(spread, expected_modes, retimed.change_s))
+    swing = make_swing(
+        coordinate, settled, noise_of(fitted), Rivals(spread, expected_modes, retimed.change_s)
+    )
+    _check_outcome(swing)
+    return swing
 
 
 def _within(coordinate: Coordinate, settings: FitSettings) -> Coordinate:
@@ -181,6 +189,25 @@ def _spread(fitted: Fitted, rival: Fitted) -> float:
     change = 2 * np.pi / rival.model.values["omega0"] - period
     joint = q.period(q.estimate(rival, noise_of(rival)))
     return float(min(np.hypot(change, joint.u), period**2 / (2 * fitted.model.length_s)))
+
+
+def _check_outcome(swing: Swing) -> None:
+    """Refuse what is hardly a swing there and back, or one of a crowd of motions in as much noise."""
+    if swing.cycles < FEWEST_CYCLES:
+        raise NothingToMeasure(
+            f"Only {swing.cycles:.1f} swings are free of disturbance.",
+            f"{FEWEST_CYCLES:g} at least are needed, and 20 for a good result.",
+            "Film for longer.",
+        )
+    codes = {doubt.code for doubt in swing.doubts}
+    crowd = sum(mode.share for mode in swing.other_modes if mode.kind == "unknown")
+    if "low-signal" in codes and crowd > CROWD_SHARE:
+        raise NothingToMeasure(
+            f"Several motions of much the same size are lost in noise; together they are {crowd:.1f} times the one "
+            "that stands out most.",
+            "One regular swing is needed.",
+            "Let the article swing farther, and keep the camera and the strings still.",
+        )
 
 
 def _check_significance(fitted: Fitted) -> None:

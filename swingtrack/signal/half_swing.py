@@ -123,7 +123,7 @@ def solve_half_swings(amplitude: Floats, damping: Damping, restoring: Restoring)
         step = np.linalg.solve(matrix, wrong[..., None])[..., 0]
         x = x - step
         size = float(np.max(np.abs(step[:, :terms]) / amplitude[:, None]))
-        if not np.isfinite(size):
+        if not size < 1e3:
             break
         if size < 1e-9:  # Newton doubles the digits: the step just taken leaves some 1e-18
             solved = True

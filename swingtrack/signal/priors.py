@@ -17,7 +17,7 @@ from swingtrack.signal.model import Prior
 from swingtrack.signal.restoring import FromLaw, PendulumLike, Restoring, is_isochronous
 
 # T/T0 − 1 = Λ A²/16: a torsion wire has Λ = 0, a pendulum 1, strings on widely spaced points with a compact article
-# up to 2.3 and in the extreme 3 (references.md section 4, cases G1 to G8: 0.96 to 3.0). Centre and standard
+# up to 2.3 and in the extreme 3 (energy integrals of eight bifilar geometries: 0.96 to 3.0). Centre and standard
 # uncertainty that cover that range.
 SHAPE_CENTRE, SHAPE_U = 1.0, 0.7
 # Where neither amplitude nor law is known: half-swings up to some 25° are usual, so the period may be longer than that

@@ -1,7 +1,7 @@
 """From fitted parameters to what is reported: period, decay and what follows from them, each with its uncertainty.
 
 With δ the decay rate (amplitude ~ e^(−δt)) and ω0 = 2π/T: half-life ln 2/δ, damping ratio ζ = δ/ω0, quality factor
-Q = 1/(2ζ), logarithmic decrement Λ = 2π ζ/√(1 − ζ²) (references: any text on the damped oscillator).
+Q = 1/(2ζ), logarithmic decrement Λ = 2π ζ/√(1 − ζ²) (any text on the damped oscillator).
 """
 
 from __future__ import annotations

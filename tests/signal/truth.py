@@ -1,7 +1,6 @@
 """Swings of known truth, made without any code of the fit: exact equations integrated by scipy's DOP853.
 
-The suspensions are written here from the geometry (references: T/T0 tables of the energy integral), not taken from the
-package.
+The suspensions are written here from their geometry, not taken from the package.
 """
 
 from __future__ import annotations
