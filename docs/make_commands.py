@@ -15,7 +15,6 @@ COMMANDS = (
     "combine",
     "plan",
     "rehearse",
-    "page",
 )
 
 

@@ -15,8 +15,7 @@ HOMES = {
     "GTC": {"inertia", "quantity"},
     "pint": {"quantity"},
     "typer": {"cli"},
-    "starlette": {"page"},
-    "jinja2": {"report", "page"},
+    "jinja2": {"report"},
 }
 
 

@@ -6,7 +6,7 @@ from typing import Annotated
 
 import typer
 
-from . import combine, fit, follow, inertia, measure, page, plan, rehearse, solids, stopwatch
+from . import combine, fit, follow, inertia, measure, plan, rehearse, solids, stopwatch
 
 app = typer.Typer(
     name="swingtrack",
@@ -41,5 +41,5 @@ def options(
     """Options of the program as a whole; --debug is acted on before the line is parsed (see edge.py)."""
 
 
-for command in (measure, follow, fit, inertia, stopwatch, solids, combine, plan, rehearse, page):
+for command in (measure, follow, fit, inertia, stopwatch, solids, combine, plan, rehearse):
     app.command()(getattr(command, command.__name__.rsplit(".", 1)[1]))

@@ -8,6 +8,7 @@ import numpy as np
 
 from ..records import Doubt, Floats
 
+REPEAT_SHARE = 0.04  # of the usual change: true repeats show 0.02 and less, starved encoders 0.05 and more
 GAP = 1.5  # intervals longer than this many usual ones have frames missing in them
 UNEVEN_SHARE = (
     0.02  # spread over usual interval above which frames are called uneven: a tenth of common phone jitter
@@ -125,7 +126,7 @@ def find_repeats(differences: Floats) -> Floats:
     # the second smallest of the neighbours: another repeat nearby must not hide this one
     usual = np.sort(around, axis=0)[2]
     usual = np.where(np.isfinite(usual), usual, 0.0)
-    repeated[1:] = (differences[1:] < 0.12 * usual[1:]) & (usual[1:] > 0.0)
+    repeated[1:] = (differences[1:] < REPEAT_SHARE * usual[1:]) & (usual[1:] > 0.0)
     return repeated
 
 

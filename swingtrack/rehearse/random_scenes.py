@@ -67,6 +67,10 @@ def random_scene(seed: int, *, duration_s: float = 12.0) -> RandomScene:
         amplitude = max(amplitude, math.radians(6.0))
     stage, film = _fitted(stage, film, amplitude, rng)
     stage = replace(stage, dot_diameter_m=_dot_diameter(rng, stage, film, labels))
+    low, high = _arc(stage, film, amplitude)
+    across = sized_stage(stage, camera_for(stage, film)).dot_diameter_px or 0.0
+    if float(np.hypot(*(high - low))) < across:
+        labels.append("arc shorter than the dot")
     sway: tuple[Sway, ...] = ()
     if rng.random() < 0.3:
         labels.append("sway")

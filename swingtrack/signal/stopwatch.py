@@ -16,6 +16,7 @@ from .stopwatch_sheet import Run, TrialSheet, read_trials
 __all__ = ["Run", "TrialSheet", "assess_trials", "compare_with_clip", "read_trials"]
 
 LEVER = 0.4  # (largest − smallest)/largest count from which a line says more than a mean of ratios
+FEWEST_TO_JUDGE = 5  # below, a line's residuals leave too little freedom for a test of outliers
 FACTOR_TOLERANCE = 0.06  # how near to 2, 4, 8 a ratio of periods must be to be laid to that
 AGREE = 1.0  # |E_n| up to which two results agree (ISO/IEC 17043)
 
@@ -53,7 +54,7 @@ def assess_trials(sheet: TrialSheet, *, target_relative_u: float | None = None) 
         off, _ = count_errors(swings, seconds)
     counts = swings + off
     kept = np.ones(counts.size, dtype=bool)
-    if not sheet.laps or counts.size > 4:
+    if counts.size >= FEWEST_TO_JUDGE:
         first = _fit(counts, seconds, kept, laps=sheet.laps)
         offset = first.offset.value if first.offset is not None else 0.0
         kept = set_outliers_aside(seconds - offset - counts * first.period.value)

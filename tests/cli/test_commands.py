@@ -152,7 +152,6 @@ def test_help_lists_every_command() -> None:
         "combine",
         "plan",
         "rehearse",
-        "page",
     ):
         assert command in done.stdout
 

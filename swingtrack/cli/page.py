@@ -1,2 +1,0 @@
-def page() -> None:
-    """x"""
