@@ -37,7 +37,7 @@ SAMPLES = (
             moment_kg_m2=0.1132,
             amplitude_rad=math.radians(8.0),
             damping=Damping(rate_per_s=0.008),
-            film=Film(duration_s=30.0, bitrate_mbps=0.48, noise=1.5, uneven_ms=0.4),
+            film=Film(duration_s=30.0, crf=24, noise=0.8, uneven_ms=0.4),
             stage=Stage(distance_m=2.6, dot_radius_m=0.78, dot_diameter_m=0.06),
             seed=11,
         ),
@@ -51,7 +51,7 @@ SAMPLES = (
             amplitude_rad=math.radians(9.0),
             damping=Damping(rate_per_s=0.012, quadratic=0.02),
             release_s=1.5,
-            film=Film(duration_s=30.0, bitrate_mbps=0.48, noise=1.5, uneven_ms=0.4, dropped_share=0.01),
+            film=Film(duration_s=30.0, crf=24, noise=0.8, uneven_ms=0.4, dropped_share=0.01),
             stage=Stage(
                 camera="side", distance_m=1.0, dot_radius_m=0.16, dot_diameter_m=0.012, dot_bgr=(50, 225, 245)
             ),
@@ -66,9 +66,9 @@ SAMPLES = (
             amplitude_rad=math.radians(14.0),
             damping=Damping(rate_per_s=0.01),
             sway=(Sway(amplitude_m=0.002, frequency_hz=math.sqrt(9.8094 / 1.35) / (2.0 * math.pi)),),
-            film=Film(duration_s=30.0, bitrate_mbps=0.48, noise=1.5, uneven_ms=0.4),
+            film=Film(duration_s=30.0, crf=24, noise=0.8, uneven_ms=0.4),
             stage=Stage(
-                distance_m=1.6, dot_radius_m=0.40, dot_diameter_m=0.03, dot_bgr=(235, 235, 240), clutter=8
+                distance_m=1.6, dot_radius_m=0.40, dot_diameter_m=0.03, dot_bgr=(50, 225, 245), clutter=8
             ),
             seed=13,
         ),

@@ -9,6 +9,7 @@ import numpy as np
 from ..records import Doubt, Floats
 
 REPEAT_SHARE = 0.04  # of the usual change: true repeats show 0.02 and less, starved encoders 0.05 and more
+MOVING_SHARE = 0.5  # of the clip's usual change, below which the scene is taken to stand still
 GAP = 1.5  # intervals longer than this many usual ones have frames missing in them
 UNEVEN_SHARE = (
     0.02  # spread over usual interval above which frames are called uneven: a tenth of common phone jitter
@@ -126,7 +127,9 @@ def find_repeats(differences: Floats) -> Floats:
     # the second smallest of the neighbours: another repeat nearby must not hide this one
     usual = np.sort(around, axis=0)[2]
     usual = np.where(np.isfinite(usual), usual, 0.0)
-    repeated[1:] = (differences[1:] < REPEAT_SHARE * usual[1:]) & (usual[1:] > 0.0)
+    # Where nothing much moves, at a turning point, an encoder may leave a picture as it was: no time is wrong there.
+    moving = usual > MOVING_SHARE * float(np.nanmedian(differences))
+    repeated[1:] = (differences[1:] < REPEAT_SHARE * usual[1:]) & moving[1:] & (usual[1:] > 0.0)
     return repeated
 
 
