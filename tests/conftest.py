@@ -6,9 +6,9 @@ import os
 
 os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")  # before numpy is loaded, as the command line does
 
-from pathlib import Path  # noqa: E402
+from pathlib import Path
 
-import pytest  # noqa: E402
+import pytest
 
 REPOSITORY = Path(__file__).resolve().parents[1]
 

@@ -48,7 +48,7 @@ def test_containers_and_codecs_give_the_true_times(
     options = {"x265-params": "log-level=error"} if codec == "libx265" else {}
     size = (192, 128)  # the least that every encoder here takes
     recipe = Recipe(ticks, codec, pixel_format, base, size=size, codec_options=options)
-    times, clip = read_times(write_clip(tmp_path / name, recipe))
+    times, _clip = read_times(write_clip(tmp_path / name, recipe))
     # Matroska and WebM keep whole milliseconds
     np.testing.assert_allclose(
         times, np.arange(30) / 30.0, atol=0.51e-3 if name.endswith(("mkv", "webm")) else 1e-9

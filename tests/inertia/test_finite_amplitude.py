@@ -34,7 +34,9 @@ ROUNDED = 5e-9  # of table cells quoted to nine digits
 
 
 @pytest.mark.parametrize(("upper", "lower", "gyration", "bounce", "ratios"), BIFILAR)
-def test_bifilar_table(upper: float, lower: float, gyration: float, bounce: bool, ratios: tuple[float, ...]) -> None:
+def test_bifilar_table(
+    upper: float, lower: float, gyration: float, bounce: bool, ratios: tuple[float, ...]
+) -> None:
     a, b = 0.5 * upper, 0.5 * lower
     dynamics = two_circle_dynamics(math.sqrt(1.0 - (a - b) ** 2), a, b, gyration if bounce else None)
     for degrees, expected in zip(DEGREES, ratios, strict=True):

@@ -82,7 +82,11 @@ def test_two_edges_round_trip() -> None:
     rig = rig_from_mapping(
         {
             "article": {"mass": "1 kg ± 0 kg"},
-            "suspension": {"kind": "two-edge", "edge_separation": "0.7 m ± 0 m", "second_period": f"{t2!r} s ± 0 s"},
+            "suspension": {
+                "kind": "two-edge",
+                "edge_separation": "0.7 m ± 0 m",
+                "second_period": f"{t2!r} s ± 0 s",
+            },
             "place": {"gravity": "9.8123 m/s^2 ± 0 m/s^2"},
         }
     )
@@ -108,7 +112,9 @@ def test_budget_of_the_sensitivity_example() -> None:
 
 
 def test_one_measured_spacing_counts_twice_and_two_count_once_each() -> None:
-    one = moment_of_inertia(bifilar("1 kg ± 0 g", "0.3 m ± 1 mm k=1", "1 m ± 0 m"), Quantity(1.0, 0.0, "s"), facts=NO_CLOCK)
+    one = moment_of_inertia(
+        bifilar("1 kg ± 0 g", "0.3 m ± 1 mm k=1", "1 m ± 0 m"), Quantity(1.0, 0.0, "s"), facts=NO_CLOCK
+    )
     two = moment_of_inertia(
         bifilar("1 kg ± 0 g", "0.3 m ± 1 mm k=1", "1 m ± 0 m", lower_spacing="0.3 m ± 1 mm k=1"),
         Quantity(1.0, 0.0, "s"),
@@ -122,12 +128,18 @@ def test_string_mass_against_a_chain() -> None:
     # chain of 400 elements (m = 0.5, k = 0.12, D = 0.3, L = 1, M_s/m = 0.02): corrected I is 1.0000029 of the truth
     m, k, d, g, strings = 0.5, 0.12, 0.3, 9.81, 0.01
     truth = m * k**2
-    period_s = 2.0 * math.pi * math.sqrt((truth + strings * d**2 / 12.0) / ((m + 0.5 * strings) * g * d**2 / 4.0))
-    plain = moment_of_inertia(bifilar("0.5 kg ± 0 g", "0.3 m ± 0 m", "1 m ± 0 m"), Quantity(period_s, 0.0, "s"), facts=NO_CLOCK)
+    period_s = (
+        2.0 * math.pi * math.sqrt((truth + strings * d**2 / 12.0) / ((m + 0.5 * strings) * g * d**2 / 4.0))
+    )
+    plain = moment_of_inertia(
+        bifilar("0.5 kg ± 0 g", "0.3 m ± 0 m", "1 m ± 0 m"), Quantity(period_s, 0.0, "s"), facts=NO_CLOCK
+    )
     # the same chain's uncorrected value, 1.000415; −M_s/(2m) + M_s D²/(12 m k²) = 0.000417 to first order
     assert plain.moment.value / truth == pytest.approx(1.000415, abs=5e-5)
     rig = bifilar("0.5 kg ± 0 g", "0.3 m ± 0 m", "1 m ± 0 m", string_mass="10 g ± 0 g")
-    assert moment_of_inertia(rig, Quantity(period_s, 0.0, "s"), facts=NO_CLOCK).moment.value == pytest.approx(truth)
+    assert moment_of_inertia(rig, Quantity(period_s, 0.0, "s"), facts=NO_CLOCK).moment.value == pytest.approx(
+        truth
+    )
 
 
 def test_wire_stiffness() -> None:
@@ -146,12 +158,17 @@ def test_wire_stiffness() -> None:
     ],
 )  # fmt: skip
 def test_normal_gravity(latitude: float, height: float, expected: float) -> None:
-    assert normal_gravity(math.radians(latitude), height) == pytest.approx(expected, abs=2e-7 if height else 1e-10)
+    assert normal_gravity(math.radians(latitude), height) == pytest.approx(
+        expected, abs=2e-7 if height else 1e-10
+    )
 
 
 def test_gravity_without_a_place_spans_the_earth() -> None:
     rig = rig_from_mapping(
-        {"article": {"mass": "1 kg"}, "suspension": {"kind": "bifilar", "length": "1 m", "upper_spacing": "0.3 m"}}
+        {
+            "article": {"mass": "1 kg"},
+            "suspension": {"kind": "bifilar", "length": "1 m", "upper_spacing": "0.3 m"},
+        }
     )
     g = gravity_of(rig)
     half = g.u * math.sqrt(3.0)
@@ -239,7 +256,14 @@ def test_mass_and_buoyancy_of_jcgm_101() -> None:
 @pytest.mark.parametrize(
     ("dof", "percent", "expected"),
     # GUM, JCGM 100:2008, Table G.2
-    [(1, 95, 12.71), (3, 95.45, 3.31), (5, 99, 4.03), (10, 95.45, 2.28), (50, 95, 2.01), (math.inf, 95.45, 2.0)],
+    [
+        (1, 95, 12.71),
+        (3, 95.45, 3.31),
+        (5, 99, 4.03),
+        (10, 95.45, 2.28),
+        (50, 95, 2.01),
+        (math.inf, 95.45, 2.0),
+    ],
 )
 def test_student_factors(dof: float, percent: float, expected: float) -> None:
     assert coverage_factor(dof, percent) == pytest.approx(expected, abs=0.005)

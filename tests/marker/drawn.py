@@ -169,7 +169,7 @@ class Drawn:
             planes = [_shifted(p, move[0] / k, move[1] / k) for p, k in zip(planes, (1, 2, 2), strict=True)]
         if any(a <= t <= b for a, b in d.occluded):
             return planes
-        x, y, patches = draw_dot(d, t, margin=6.0)
+        _x, _y, patches = draw_dot(d, t, margin=6.0)
         for plane, (rows, columns, values) in zip(planes, patches, strict=True):
             plane[rows, columns] += values
         return planes
