@@ -222,7 +222,7 @@ def period_relative_u(goal: Goal, period_s: float, seconds: float) -> float:
     i0, i1, i2 = (float(np.trapezoid(t**n * weight, t)) for n in range(3))
     variance = 2.0 * (noise / AMPLITUDE_RAD) ** 2 / goal.rate_hz * i0 / (i0 * i2 - i1**2)
     omega = 2.0 * math.pi / period_s
-    amplitude_left = 0.03 * AMPLITUDE_RAD**2 / 16.0  # the amplitude known to 1.5 %
+    amplitude_left = 0.004 * AMPLITUDE_RAD**2 / 16.0  # from above the arc tells the amplitude to 0.2 %
     return math.hypot(math.sqrt(variance) / omega, amplitude_left)
 
 
