@@ -1,4 +1,4 @@
-"""Bifilar suspension: two equal strings, equal or unequal spacing, centre of mass off the middle allowed."""
+"""Bifilar suspension: two strings, equal or unequal spacing, centre of mass off the middle allowed."""
 
 from __future__ import annotations
 
@@ -9,18 +9,27 @@ from typing import Any
 from ..errors import BadRig
 from ..records import Doubt, ExpectedMode, Quantity, Rig
 from .gravity import gravity_of
-from .strings import add_string_inputs, check_strings, string_mass_terms, twist_moment
-from .suspension import Dynamics, need_mass
-from .two_circles import two_circle_dynamics, vertical_drop
+from .strings import (
+    NOT_NEGATIVE,
+    add_string_inputs,
+    check_strings,
+    moment_on_strings,
+    period_on_strings,
+    slant_doubts,
+    twist_share,
+)
+from .suspension import Dynamics, need_dimensions, need_mass
+from .two_circles import drop_of, two_circle_dynamics
+from .unequal_strings import unequal_doubts
 
-FOUR_PI_2 = 4.0 * math.pi**2
+PARALLEL = 0.02  # |a − b| / (a + b) below which strings count as parallel for the rule of the off-centre mass
 
 
 class Bifilar:
     """I = m g a b T² / (4π² h0), a and b the half spacings, h0 = √(L² − (a − b)²) the vertical drop.
 
-    With the centre of mass off the middle by e along the line of the strings, a b becomes (a + e)(b − e) at equal
-    spacing D: (D/2)² − e² (the product of the distances), I then about the centre of mass.
+    With the centre of mass off the middle by e along the line of parallel strings, a b becomes the product of the
+    distances, (D/2 + e)(D/2 − e) = (D/2)² − e²; I is then about the centre of mass.
     Sources: docs/theory.md, section Bifilar (modes checked against the rigid body with six degrees of freedom).
     """
 
@@ -36,9 +45,12 @@ class Bifilar:
         return found
 
     def check(self, rig: Rig) -> tuple[Doubt, ...]:
+        given = rig.suspension.dimensions
+        need_dimensions(
+            rig, "drop" if "drop" in given else "length", "upper_spacing", not_negative=NOT_NEGATIVE
+        )
         x = {key: quantity.value for key, quantity in self.inputs(rig).items()}
-        a, b, drop, arm = _geometry(x)
-        doubts = list(check_strings(rig, strings=2, drop=drop))
+        a, b, drop, _ = _geometry(x)
         offset = x.get("centre_offset", 0.0)
         if offset >= min(a, b):
             raise BadRig(
@@ -46,7 +58,8 @@ class Bifilar:
                 "Needed: the centre of mass between the two strings.",
                 "Move the strings, or check the unit.",
             )
-        if "centre_offset" in x and abs(a - b) > 0.02 * (a + b):
+        doubts = list(check_strings(rig, largest_share=0.5 * (1.0 + offset / min(a, b))))
+        if offset > 0.0 and abs(a - b) > PARALLEL * (a + b):
             doubts.append(
                 Doubt(
                     "offset-with-slanted-strings",
@@ -62,24 +75,15 @@ class Bifilar:
                     "Longer strings make the swing gentler and the bounce smaller.",
                 )
             )
-        if arm <= 0.0:
-            raise BadRig(
-                "The spacings leave no arm for gravity to turn the article back.",
-                "Needed: spacings over zero.",
-            )
-        return tuple(doubts)
+        return (*doubts, *slant_doubts(a, b, drop), *unequal_doubts(rig))
 
     def moment(self, x: Mapping[str, Any]) -> Any:
-        _, _, drop, arm = _geometry(x)
-        carried, rotary = string_mass_terms(x, x["upper_spacing"], x.get("lower_spacing", x["upper_spacing"]))
-        swing = (x["mass"] + carried) * x["gravity"] * arm / drop * x["period"] ** 2 / FOUR_PI_2
-        return swing - rotary + twist_moment(x)
+        _, b, drop, arm = _geometry(x)
+        return moment_on_strings(x, arm, drop, 2.0 * b)
 
     def period(self, x: Mapping[str, Any], moment: float) -> float:
-        _, _, drop, arm = _geometry(x)
-        carried, rotary = string_mass_terms(x, x["upper_spacing"], x.get("lower_spacing", x["upper_spacing"]))
-        stiffness = (x["mass"] + carried) * x["gravity"] * arm / drop + x.get("string_stiffness", 0.0)
-        return float(2.0 * math.pi * math.sqrt((moment + rotary) / stiffness))
+        _, b, drop, arm = _geometry(x)
+        return period_on_strings(x, moment, (arm, drop, 2.0 * b))
 
     def dynamics(self, rig: Rig, moment: float | None) -> Dynamics:
         x = {key: quantity.value for key, quantity in self.inputs(rig).items()}
@@ -88,28 +92,27 @@ class Bifilar:
         # Off the middle the article tips a little as it turns; the mean radius √(ab − e²) keeps the small-swing
         # stiffness exact and the finite-amplitude part good to the order of (e/a)².
         scale = math.sqrt(arm / (a * b))
-        return two_circle_dynamics(drop, a * scale, b * scale, gyration)
+        return two_circle_dynamics(drop, (a * scale, b * scale), gyration, twist=twist_share(x, arm, drop))
 
     def modes(self, rig: Rig) -> tuple[ExpectedMode, ...]:
         x = {key: quantity.value for key, quantity in self.inputs(rig).items()}
-        _, _, drop, _ = _geometry(x)
+        a, b, drop, _ = _geometry(x)
         hz = math.sqrt(x["gravity"] / drop) / (2.0 * math.pi)
-        # Along the strings' line sway is exactly g/L; across it the article tips as well and the frequency rises.
-        return (ExpectedMode("sway", hz, 0.03), ExpectedMode("roll", 2.0 * hz, 0.6))
+        # Along the line of parallel strings sway is exactly g/L; slanted strings pitch the article as it sways, by
+        # an amount that depends on its depth, which the rig does not say. Across, the article tips as well and the
+        # frequency rises.
+        return (ExpectedMode("sway", hz, 0.03 + abs(a - b) / drop), ExpectedMode("roll", 2.0 * hz, 0.6))
+
+    def judge(self, x: Mapping[str, Any], moment: float) -> tuple[Doubt, ...]:
+        return ()
 
 
 def _geometry(x: Mapping[str, Any]) -> tuple[Any, Any, Any, Any]:
     """Half spacings a and b, vertical drop h0, and the arm product ab − e² (m²)."""
     a = 0.5 * x["upper_spacing"]
     b = 0.5 * x["lower_spacing"] if "lower_spacing" in x else a
-    if "drop" in x:
-        drop = x["drop"]
-    elif isinstance(x["length"], float) and isinstance(a, float):
-        drop = vertical_drop(x["length"], a, b)
-    else:
-        drop = (x["length"] ** 2 - (a - b) ** 2) ** 0.5
     offset = x.get("centre_offset", 0.0)
-    return a, b, drop, a * b - offset**2
+    return a, b, drop_of(x, a, b), a * b - offset**2
 
 
 BIFILAR = Bifilar()

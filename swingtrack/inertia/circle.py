@@ -9,11 +9,20 @@ from typing import Any
 from ..errors import BadRig
 from ..records import Doubt, ExpectedMode, Quantity, Rig
 from .gravity import gravity_of
-from .strings import add_string_inputs, check_strings, string_mass_terms, twist_moment
-from .suspension import Dynamics, need_mass
-from .two_circles import two_circle_dynamics, vertical_drop
+from .string_materials import number_of_strings
+from .strings import (
+    NOT_NEGATIVE,
+    add_string_inputs,
+    check_strings,
+    moment_on_strings,
+    period_on_strings,
+    slant_doubts,
+    twist_share,
+)
+from .suspension import Dynamics, need_dimensions, need_mass
+from .two_circles import drop_of, two_circle_dynamics
 
-FOUR_PI_2 = 4.0 * math.pi**2
+PARALLEL = 0.02  # |R − r| / (R + r) below which strings count as parallel for the rule of the off-centre mass
 
 
 class Circle:
@@ -35,10 +44,13 @@ class Circle:
         return found
 
     def check(self, rig: Rig) -> tuple[Doubt, ...]:
+        given, strings = rig.suspension.dimensions, number_of_strings(rig)
+        need_dimensions(
+            rig, "drop" if "drop" in given else "length", "upper_radius", not_negative=NOT_NEGATIVE
+        )
         x = {key: quantity.value for key, quantity in self.inputs(rig).items()}
         a, b, drop, _ = _geometry(x)
-        doubts = list(check_strings(rig, strings=rig.suspension.strings, drop=drop))
-        inside = min(a, b) * math.cos(math.pi / rig.suspension.strings)
+        inside = min(a, b) * math.cos(math.pi / strings)
         offset = x.get("centre_offset", 0.0)
         if offset >= inside:
             raise BadRig(
@@ -46,7 +58,10 @@ class Circle:
                 f"Needed: an offset below {inside:.4g} m.",
                 "Move the article on its strings, or check the unit.",
             )
-        if offset > 0.0 and abs(a - b) > 0.02 * (a + b):
+        # Tensions that vary straight across the circle: (1 + 2 e/r)/n on the side of the centre of mass, exact for
+        # three strings and the least uneven of the possible ones for more.
+        doubts = list(check_strings(rig, largest_share=(1.0 + 2.0 * offset / min(a, b)) / strings))
+        if offset > 0.0 and abs(a - b) > PARALLEL * (a + b):
             doubts.append(
                 Doubt(
                     "offset-with-slanted-strings",
@@ -62,45 +77,39 @@ class Circle:
                     "Longer strings make the swing gentler and the bounce smaller.",
                 )
             )
-        return tuple(doubts)
+        return (*doubts, *slant_doubts(a, b, drop))
 
     def moment(self, x: Mapping[str, Any]) -> Any:
         _, b, drop, arm = _geometry(x)
-        carried, rotary = string_mass_terms(x, 2.0 * b, 2.0 * b)
-        swing = (x["mass"] + carried) * x["gravity"] * arm / drop * x["period"] ** 2 / FOUR_PI_2
-        return swing - rotary + twist_moment(x)
+        return moment_on_strings(x, arm, drop, 2.0 * b)
 
     def period(self, x: Mapping[str, Any], moment: float) -> float:
         _, b, drop, arm = _geometry(x)
-        carried, rotary = string_mass_terms(x, 2.0 * b, 2.0 * b)
-        stiffness = (x["mass"] + carried) * x["gravity"] * arm / drop + x.get("string_stiffness", 0.0)
-        return float(2.0 * math.pi * math.sqrt((moment + rotary) / stiffness))
+        return period_on_strings(x, moment, (arm, drop, 2.0 * b))
 
     def dynamics(self, rig: Rig, moment: float | None) -> Dynamics:
         x = {key: quantity.value for key, quantity in self.inputs(rig).items()}
         a, b, drop, arm = _geometry(x)
         gyration = None if moment is None else math.sqrt(moment / x["mass"])
         scale = math.sqrt(arm / (a * b))
-        return two_circle_dynamics(drop, a * scale, b * scale, gyration)
+        return two_circle_dynamics(drop, (a * scale, b * scale), gyration, twist=twist_share(x, arm, drop))
 
     def modes(self, rig: Rig) -> tuple[ExpectedMode, ...]:
         x = {key: quantity.value for key, quantity in self.inputs(rig).items()}
-        _, _, drop, _ = _geometry(x)
-        return (ExpectedMode("sway", math.sqrt(x["gravity"] / drop) / (2.0 * math.pi), 0.05),)
+        a, b, drop, _ = _geometry(x)
+        hz = math.sqrt(x["gravity"] / drop) / (2.0 * math.pi)
+        return (ExpectedMode("sway", hz, 0.05 + abs(a - b) / drop),)
+
+    def judge(self, x: Mapping[str, Any], moment: float) -> tuple[Doubt, ...]:
+        return ()
 
 
 def _geometry(x: Mapping[str, Any]) -> tuple[Any, Any, Any, Any]:
     """Radii above and below, vertical drop, and the arm product R r − e² (m²)."""
     a = x["upper_radius"]
     b = x.get("lower_radius", a)
-    if "drop" in x:
-        drop = x["drop"]
-    elif isinstance(x["length"], float) and isinstance(a, float):
-        drop = vertical_drop(x["length"], a, b)
-    else:
-        drop = (x["length"] ** 2 - (a - b) ** 2) ** 0.5
     offset = x.get("centre_offset", 0.0)
-    return a, b, drop, a * b - offset**2
+    return a, b, drop_of(x, a, b), a * b - offset**2
 
 
 CIRCLE = Circle()

@@ -8,12 +8,13 @@ from typing import Any
 
 import numpy as np
 
-from ..errors import BadRig
 from ..records import Doubt, ExpectedMode, Quantity, Rig
 from .gravity import gravity_of
-from .suspension import Dynamics, need_mass
+from .suspension import Dynamics, need_dimensions, need_mass
 
 FOUR_PI_2 = 4.0 * math.pi**2
+# m l² over I from which a doubt in the distance is worth four times its size in I and more: our judgment.
+FAR = 3.0
 
 
 def pendulum_dynamics() -> Dynamics:
@@ -27,13 +28,14 @@ class KnifeEdge:
     about = "axis through the centre of mass, parallel to the edge"
 
     def inputs(self, rig: Rig) -> dict[str, Quantity]:
-        return {
-            "mass": need_mass(rig),
-            "gravity": gravity_of(rig),
-            "pivot_to_centre": rig.suspension.dimensions["pivot_to_centre"],
-        }
+        found = {"mass": need_mass(rig), "gravity": gravity_of(rig)}
+        if "pivot_to_centre" in rig.suspension.dimensions:
+            found["pivot_to_centre"] = rig.suspension.dimensions["pivot_to_centre"]
+        return found
 
     def check(self, rig: Rig) -> tuple[Doubt, ...]:
+        need_dimensions(rig, "pivot_to_centre")
+        need_mass(rig)
         return ()
 
     def moment(self, x: Mapping[str, Any]) -> Any:
@@ -55,14 +57,17 @@ class KnifeEdge:
     def modes(self, rig: Rig) -> tuple[ExpectedMode, ...]:
         return ()
 
-
-def refuse_short_period(moment: float, needed: str) -> None:
-    """BadRig where a period is too short for the distances: the moment would not be positive."""
-    if not moment > 0.0:
-        raise BadRig(
-            f"The period and the distances give a moment of inertia of {moment:.3g} kg m².",
-            needed,
-            "Check distance, period and their units.",
+    def judge(self, x: Mapping[str, Any], moment: float) -> tuple[Doubt, ...]:
+        moved = x["mass"] * x["pivot_to_centre"] ** 2
+        if not moment > 0.0 or moved <= FAR * moment:
+            return ()
+        return (
+            Doubt(
+                "edge-far-from-centre",
+                f"The moment is the small difference of two big ones: m l² is {moved / moment:.1f} times it, and every "
+                "doubt in distance and period grows accordingly.",
+                "Move the edge nearer to the centre of mass (best about one radius of gyration off), or use strings.",
+            ),
         )
 
 

@@ -4,25 +4,39 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
-from ..errors import BadRig
-from ..records import BudgetLine, Correction, Doubt, ExpectedMode, Inertia, Quantity, Rig
+from ..errors import BadInput, BadRig
+from ..records import Correction, Doubt, ExpectedMode, Inertia, Quantity, Rig
 from . import corrections as c
+from .advice import WORTH_IMPROVING, advise, advise_on_linearity, advise_on_scale
 from .budget import Propagated, propagate
 from .knife_edge import KNIFE_EDGE
 from .monte_carlo import monte_carlo_check
 from .suspension import Model, model_of
+from .sway_check import check_sway
+
+__all__ = ["CORRECTIONS", "SwingFacts", "advise", "expected_modes", "moment_of_inertia"]
 
 DEFAULT_CLOCK_U = 50e-6 / math.sqrt(3.0)  # a phone's clock within 50 ppm, as limits
-WORTH_IMPROVING = 0.10  # share of the variance below which measuring an input better gains next to nothing
-SWAY_TOLERANCE = 3.0  # the two radii of gyration should agree within this many standard uncertainties
+COARSE = 0.05  # relative standard uncertainty from which a moment is called coarse: our judgment
+CORRECTIONS = (
+    "amplitude",
+    "damping",
+    "string twist",
+    "string mass",
+    "string bending",
+    "unequal strings",
+    "buoyancy",
+    "air",
+    "tilt",
+)
 
 
 @dataclass(frozen=True)
 class SwingFacts:
-    """What the clip says beside the period.
+    """What the clip says beside the period, and which corrections are wanted.
 
     Parameters
     ----------
@@ -35,6 +49,11 @@ class SwingFacts:
     damping_ratio : float or None
     sway_period_s : float or None
         Period of sway along the line of the strings, seen in the same clip.
+    leave_out : tuple of str
+        Names of `CORRECTIONS` that are not to be applied; they stay in the list, as left out.
+    scale_in_air : bool
+        Whether the mass is a scale's bare reading, to be lowered by the 0.015 % that a scale adjusted in air shows too much
+        (`corrections.buoyancy_correction`).
     """
 
     clock_relative_u: float = DEFAULT_CLOCK_U
@@ -42,6 +61,8 @@ class SwingFacts:
     amplitude_shift: float | None = None
     damping_ratio: float | None = None
     sway_period_s: float | None = None
+    leave_out: tuple[str, ...] = ()
+    scale_in_air: bool = False
 
 
 def moment_of_inertia(rig: Rig, period: Quantity, *, facts: SwingFacts | None = None) -> Inertia:
@@ -64,43 +85,68 @@ def moment_of_inertia(rig: Rig, period: Quantity, *, facts: SwingFacts | None = 
     ------
     BadRig
         The rig can't be hung as described, or period and dimensions leave no positive moment.
+
+    Examples
+    --------
+    >>> from swingtrack.records import Article, Suspension
+    >>> given = {"length": Quantity(1.0, 0.0, "m"), "upper_spacing": Quantity(0.3, 0.0, "m")}
+    >>> rig = Rig(
+    ...     Article("paddle", Quantity(0.5, 0.0, "kg")),
+    ...     Suspension("bifilar", given),
+    ...     gravity=Quantity(9.81, 0.0, "m/s^2"),
+    ... )
+    >>> round(moment_of_inertia(rig, Quantity(1.2, 0.0, "s")).moment.value, 9)
+    0.004025541
     """
     facts = facts or SwingFacts()
+    _check_names(facts.leave_out)
     if not (math.isfinite(period.value) and period.value > 0.0):
         raise BadRig(f"A period of {period.value:g} s was given.", "Needed: a period over zero.")
     model = model_of(rig.suspension.kind)
     doubts = list(model.check(rig))
-    inputs = model.inputs(rig) | {"period": period}
-    if facts.clock_relative_u > 0.0:
-        inputs["clock"] = Quantity(0.0, facts.clock_relative_u, "1", shape="rectangular")
-    plain = float(_with_clock(model.moment)({key: q.value for key, q in inputs.items()}))
+    full = model.inputs(rig) | {"period": _wanted_period(period, facts)}
+    dropped = {key for name in facts.leave_out for key in c.STRING_INPUTS.get(name, ())}
+    inputs = {key: quantity for key, quantity in full.items() if key not in dropped}
+    x = {key: quantity.value for key, quantity in inputs.items()}
+    plain = float(model.moment(x))
+    doubts += model.judge(x, plain)
     if not plain > 0.0:
         raise BadRig(
             f"Period {period.value:.6g} s and the distances give a moment of inertia of {plain:.3g} kg m².",
             "Needed: a positive one; the period is too short for these distances.",
             "Check the distances, the period and their units.",
         )
-    corrected = _corrections(rig, plain, period.value, facts)
-    air = next(item for item in corrected if item.name == "air")
-    if air.relative:
-        inputs["air"] = Quantity(-air.relative * plain, air.u * plain, "kg m^2", shape="rectangular")
-    function = _with_air(_with_clock(model.moment))
+    corrected = _corrections(rig, full, plain, facts)
+    inputs |= _further_inputs(corrected, plain, facts)
+    function = _corrected(model.moment)
     result = propagate(function, inputs, "kg m^2")
+    if not result.quantity.value > 0.0:
+        raise BadRig(
+            f"The air said to swing along would be more than all that swings ({plain:.3g} kg m²).",
+            "Needed: an [air] shape of the size of the article.",
+            "Check its dimensions and their units.",
+        )
     edge = None
     if rig.suspension.kind == "knife-edge":
-        edge = propagate(_with_clock(KNIFE_EDGE.moment_about_edge), inputs, "kg m^2").quantity
-    doubts += _doubts(rig, result, facts)
+        edge = propagate(_corrected(KNIFE_EDGE.moment_about_edge), inputs, "kg m^2").quantity
+    drawn = monte_carlo_check(function, inputs, result.quantity)
+    agrees, disagrees = check_sway(rig, result.quantity, inputs["period"], facts.sway_period_s)
     return Inertia(
         moment=result.quantity,
         k=result.k,
         about=model.about,
-        radius_of_gyration=_gyration(model, inputs, function),
+        radius_of_gyration=_gyration(inputs, function),
         budget=result.lines,
         corrections=corrected,
-        monte_carlo=monte_carlo_check(function, inputs, result.quantity),
+        monte_carlo=drawn,
         moment_about_edge=edge,
-        advice=advise(result.lines),
-        doubts=tuple(doubts),
+        advice=(
+            *advise(result.lines),
+            *advise_on_scale(rig, result.quantity),
+            *advise_on_linearity(result.quantity, drawn),
+            *agrees,
+        ),
+        doubts=(*doubts, *_doubts(rig, model, result), *disagrees),
     )
 
 
@@ -109,38 +155,60 @@ def expected_modes(rig: Rig, period_s: float | None = None) -> tuple[ExpectedMod
     return model_of(rig.suspension.kind).modes(rig)
 
 
-def advise(lines: tuple[BudgetLine, ...]) -> tuple[str, ...]:
-    """Which inputs to measure better, the most worthwhile first, and what halving each doubt would gain."""
-    ranked = sorted((line for line in lines if line.share >= WORTH_IMPROVING), key=lambda line: -line.share)
-    said = []
-    for line in ranked[:3]:
-        gain = 1.0 - math.sqrt(1.0 - 0.75 * min(line.share, 1.0))
-        name = line.input.replace("_", " ")
-        said.append(
-            f"{name} makes {100 * line.share:.0f} % of the variance: halving its doubt takes {100 * gain:.0f} % off the uncertainty."
+def _check_names(leave_out: tuple[str, ...]) -> None:
+    unknown = [name for name in leave_out if name not in CORRECTIONS]
+    if unknown:
+        raise BadInput(
+            f"There is no correction {unknown[0]!r} to leave out.",
+            f"Needed: any of {', '.join(CORRECTIONS)}.",
         )
-    return tuple(said)
 
 
-def _with_clock(moment: Callable[[Mapping[str, Any]], Any]) -> Callable[[Mapping[str, Any]], Any]:
-    """The clock's relative error stretches every period alike."""
+def _wanted_period(period: Quantity, facts: SwingFacts) -> Quantity:
+    """The period that the formula is to take: the clip's own where amplitude or damping are left uncorrected."""
+    stretch = 1.0
+    if "amplitude" in facts.leave_out and facts.amplitude_shift is not None:
+        stretch *= 1.0 + facts.amplitude_shift
+    if "damping" in facts.leave_out and facts.damping_ratio is not None:
+        stretch /= math.sqrt(1.0 - facts.damping_ratio**2)
+    return replace(period, value=period.value * stretch)
+
+
+def _further_inputs(
+    corrected: tuple[Correction, ...], plain: float, facts: SwingFacts
+) -> dict[str, Quantity]:
+    """Inputs beside those of the suspension: the clock, the air in kg m², and what changes the moment relatively."""
+    found = {}
+    if facts.clock_relative_u > 0.0:
+        found["clock"] = Quantity(0.0, facts.clock_relative_u, "1", shape="rectangular")
+    by_name = {item.name: item for item in corrected if item.applied}
+    if "air" in by_name:
+        air = by_name["air"]
+        found["air"] = Quantity(-air.relative * plain, air.u * plain, "kg m^2", shape="rectangular")
+    for name, key in (("buoyancy", "scale_in_air"), ("tilt", "tilt"), ("unequal strings", "unequal_strings")):
+        if name in by_name:
+            found[key] = Quantity(by_name[name].relative, by_name[name].u, "1", shape="rectangular")
+    return found
+
+
+def _corrected(moment: Callable[[Mapping[str, Any]], Any]) -> Callable[[Mapping[str, Any]], Any]:
+    """The suspension's formula with the clock's error in the period, less the air, times what is relative."""
 
     def function(x: Mapping[str, Any]) -> Any:
-        stretch = 1.0 + x["clock"] if "clock" in x else 1.0
-        return moment({**x, "period": x["period"] * stretch})
-
-    return function
-
-
-def _with_air(moment: Callable[[Mapping[str, Any]], Any]) -> Callable[[Mapping[str, Any]], Any]:
-    def function(x: Mapping[str, Any]) -> Any:
-        return moment(x) - x["air"] if "air" in x else moment(x)
+        stretched = {**x, "period": x["period"] * (1.0 + x["clock"])} if "clock" in x else x
+        found = moment(stretched)
+        if "air" in x:
+            found = found - x["air"]
+        for key in ("scale_in_air", "tilt", "unequal_strings"):
+            if key in x:
+                found = found * (1.0 + x[key])
+        return found
 
     return function
 
 
 def _gyration(
-    model: Model, inputs: Mapping[str, Quantity], function: Callable[[Mapping[str, Any]], Any]
+    inputs: Mapping[str, Quantity], function: Callable[[Mapping[str, Any]], Any]
 ) -> Quantity | None:
     """k = √(I/m), with the mass in both counted once; None without a mass."""
     if "mass" not in inputs:
@@ -148,21 +216,31 @@ def _gyration(
     return propagate(lambda x: (function(x) / x["mass"]) ** 0.5, inputs, "m").quantity
 
 
-def _corrections(rig: Rig, moment: float, period_s: float, facts: SwingFacts) -> tuple[Correction, ...]:
+def _corrections(
+    rig: Rig, inputs: Mapping[str, Quantity], moment: float, facts: SwingFacts
+) -> tuple[Correction, ...]:
     """Every correction, applied or not, zero ones included."""
-    found = [c.amplitude_correction(facts.amplitude_shift), c.damping_correction(facts.damping_ratio)]
-    if rig.suspension.kind in c.ON_STRINGS:
-        found += [c.string_twist_correction(rig, moment, period_s), c.string_mass_correction(rig)]
-    return (*found, c.buoyancy_correction(rig), c.air_correction(rig, moment), c.tilt_correction())
-
-
-def _doubts(rig: Rig, result: Propagated, facts: SwingFacts) -> list[Doubt]:
-    doubts = []
-    unstated = [
-        key
-        for key, q in model_of(rig.suspension.kind).inputs(rig).items()
-        if not q.stated and key != "gravity"
+    out = facts.leave_out
+    found = [
+        c.amplitude_correction(facts.amplitude_shift, leave_out="amplitude" in out),
+        c.damping_correction(facts.damping_ratio, leave_out="damping" in out),
     ]
+    if rig.suspension.kind in c.ON_STRINGS:
+        model = model_of(rig.suspension.kind)
+        found += [c.string_correction(name, model, inputs, leave_out=name in out) for name in c.STRING_INPUTS]
+    if rig.suspension.kind == "bifilar":
+        found.append(c.unequal_strings_correction(rig, leave_out="unequal strings" in out))
+    return (
+        *found,
+        c.buoyancy_correction(rig, apply=facts.scale_in_air and "buoyancy" not in out),
+        c.air_correction(rig, moment, leave_out="air" in out),
+        c.tilt_correction(rig, leave_out="tilt" in out),
+    )
+
+
+def _doubts(rig: Rig, model: Model, result: Propagated) -> list[Doubt]:
+    doubts = []
+    unstated = [key for key, q in model.inputs(rig).items() if not q.stated and key != "gravity"]
     if unstated:
         doubts.append(
             Doubt(
@@ -171,8 +249,18 @@ def _doubts(rig: Rig, result: Propagated, facts: SwingFacts) -> list[Doubt]:
                 "Write what your tape or scale can really do, such as ± 0.5 mm.",
             )
         )
-    largest = max(result.lines, key=lambda line: line.share)
-    if result.quantity.relative_u > 0.05:
+    shares = {line.input: line.share for line in result.lines}
+    nowhere = rig.gravity is None and rig.latitude is None
+    if nowhere and shares.get("gravity", 0.0) >= WORTH_IMPROVING:
+        doubts.append(
+            Doubt(
+                "gravity-unknown",
+                f"No place was given: gravity's whole range on Earth makes {100 * shares['gravity']:.0f} % of the variance.",
+                'Write the latitude in [place], such as latitude = "51.5 deg"; any map has it.',
+            )
+        )
+    if result.quantity.relative_u > COARSE:
+        largest = max(result.lines, key=lambda line: line.share)
         doubts.append(
             Doubt(
                 "inertia-coarse",
@@ -180,25 +268,4 @@ def _doubts(rig: Rig, result: Propagated, facts: SwingFacts) -> list[Doubt]:
                 "Measure that better first.",
             )
         )
-    if rig.suspension.kind == "bifilar" and facts.sway_period_s is not None:
-        doubts += _sway_check(rig, result, facts.sway_period_s)
     return doubts
-
-
-def _sway_check(rig: Rig, result: Propagated, sway_period_s: float) -> list[Doubt]:
-    """k = (D/2) T_yaw/T_sway needs neither length, gravity nor mass; it should agree (docs/theory.md)."""
-    lines = {line.input: line for line in result.lines}
-    if "lower_spacing" in lines or "centre_offset" in lines:
-        return []
-    spacing, period, mass = lines["upper_spacing"].value, lines["period"].value, lines["mass"].value
-    by_sway = mass * (0.5 * spacing * period / sway_period_s) ** 2
-    difference = by_sway / result.quantity.value - 1.0
-    if abs(difference) <= SWAY_TOLERANCE * max(result.quantity.relative_u, 0.01):
-        return []
-    return [
-        Doubt(
-            "sway-disagrees",
-            f"The sway seen in the clip gives a moment {100 * difference:+.1f} % off this one.",
-            "Check string length, spacing and mass; measure the spacing at the knots.",
-        )
-    ]

@@ -53,6 +53,13 @@ class Model(Protocol):
         """Other motions that the rig predicts."""
         ...
 
+    def judge(self, x: Mapping[str, Any], moment: float) -> tuple[Doubt, ...]:
+        """What can be said only once the period is known; `x` holds plain numbers, x["period"] among them.
+
+        BadRig where the period contradicts the rig; called before the moment is found to be over zero.
+        """
+        ...
+
 
 def model_of(kind: str) -> Model:
     """The model of a suspension kind as named in the rig file."""
@@ -74,6 +81,36 @@ def model_of(kind: str) -> Model:
     return models[kind]
 
 
+def need_dimensions(rig: Rig, *required: str, not_negative: tuple[str, ...] = ()) -> None:
+    """BadRig where a dimension that the formula needs is missing, zero, negative or no number.
+
+    The rig file's reader refuses most of this by itself; rigs are made in other ways too.
+    """
+    given = rig.suspension.dimensions
+    for key in required:
+        if key not in given:
+            raise BadRig(
+                f"suspension.{key} is missing.",
+                f"Needed: the {key.replace('_', ' ')} of the {rig.suspension.kind} suspension.",
+                "docs/files.md lists the keys of each suspension.",
+            )
+    for key, quantity in given.items():
+        where, may_be_zero = f"suspension.{key}", key in not_negative
+        _need_sign(quantity, where, may_be_zero=may_be_zero)
+
+
+def _need_sign(quantity: Quantity, where: str, *, may_be_zero: bool = False) -> None:
+    value = quantity.value
+    if not (math.isfinite(value) and math.isfinite(quantity.u) and quantity.u >= 0.0):
+        raise BadRig(f"{where} = {value:g} ± {quantity.u:g} {quantity.unit}.", "Needed: finite numbers.")
+    if value < 0.0 or (value == 0.0 and not may_be_zero):
+        raise BadRig(
+            f"{where} = {value:g} {quantity.unit} is {'negative' if value < 0.0 else 'zero'}.",
+            f"Needed: a value {'of zero or more' if may_be_zero else 'over zero'}.",
+            "Check the number and its sign.",
+        )
+
+
 def need_mass(rig: Rig) -> Quantity:
     """Mass of all that hangs there, weights added to the article included; BadRig where the rig gives none."""
     mass = rig.article.mass
@@ -83,6 +120,7 @@ def need_mass(rig: Rig) -> Quantity:
             "Needed: the mass as a scale reads it.",
             'Write mass = "0.912 kg ± 0.5 g".',
         )
+    _need_sign(mass, "article.mass")
     if not rig.article.added:
         return mass
     parts = [mass, *(weight.mass for weight in rig.article.added)]

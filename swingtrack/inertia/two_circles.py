@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping
+from typing import Any
 
 import numpy as np
 
@@ -22,24 +24,40 @@ def vertical_drop(length: float, a: float, b: float) -> float:
     return math.sqrt(length**2 - (a - b) ** 2)
 
 
-def two_circle_dynamics(drop: float, a: float, b: float, gyration: float | None) -> Dynamics:
+def drop_of(x: Mapping[str, Any], a: Any, b: Any) -> Any:
+    """The drop as measured, or by the strings' length; plain numbers, arrays of draws and uncertain numbers alike."""
+    if "drop" in x:
+        return x["drop"]
+    if isinstance(x["length"], float) and isinstance(a, float) and isinstance(b, float):
+        return vertical_drop(x["length"], a, b)
+    return (x["length"] ** 2 - (a - b) ** 2) ** 0.5
+
+
+def two_circle_dynamics(
+    drop: float, radii: tuple[float, float], gyration: float | None, *, twist: float = 0.0
+) -> Dynamics:
     """Exact yaw of a body on equal inextensible strings from radius a above to radius b below.
 
-    The height below the upper circle is h(q) = √(h0² − 2ab (1 − cos q)). With I ω0² = m g ab/h0,
-    v(q) = (h0 − h) h0/(ab) and m(q) = 1 + (h′/k)², h′ = −ab sin q / h (the bounce).
+    The height below the upper circle is h(q) = √(h0² − 2ab (1 − cos q)). With I ω0² = m g ab/h0 + κ and f the part of
+    it that the strings' twist κ makes, v(q) = (1 − f)(h0 − h) h0/(ab) + f q²/2 and m(q) = 1 + (h′/k)²,
+    h′ = −ab sin q / h (the bounce).
 
     Parameters
     ----------
-    drop, a, b : float
-        h0 and the two radii, m.
+    drop : float
+        h0, m.
+    radii : (float, float)
+        a and b, m.
     gyration : float or None
         Radius of gyration k, m; None leaves the bounce out.
+    twist : float
+        f, 0 for thread.
 
     Notes
     -----
     Own derivation (docs/theory.md); checked against six-degree-of-freedom and quadrature tables in the tests.
     """
-    ab = a * b
+    ab = radii[0] * radii[1]
 
     def height_squared(q: Floats) -> Floats:
         return drop**2 - 4.0 * ab * np.sin(0.5 * q) ** 2
@@ -47,7 +65,7 @@ def two_circle_dynamics(drop: float, a: float, b: float, gyration: float | None)
     def potential(q: Floats) -> Floats:
         # (h0 − h) written as (h0² − h²)/(h0 + h): no cancellation at small angles
         h = np.sqrt(height_squared(q))
-        return 4.0 * np.sin(0.5 * q) ** 2 * drop / (drop + h)
+        return (1.0 - twist) * 4.0 * np.sin(0.5 * q) ** 2 * drop / (drop + h) + 0.5 * twist * q**2
 
     def inertia(q: Floats) -> Floats:
         if gyration is None:
