@@ -99,7 +99,7 @@ def test_three_parallel_strings_off_centre(azimuth: float) -> None:
     ring = 0.2 * np.column_stack([np.cos(angles), np.sin(angles), np.zeros(3)])
     shift = 0.03 * np.array([math.cos(azimuth), math.sin(azimuth), 0.0])
     ties = ring - shift
-    body = Body(MASS, MASS * np.diag([0.04, 0.05, 0.09]), [*ties, 0, 0, 0.9], ties, G)
+    body = Body(MASS, MASS * np.diag([0.04, 0.05, 0.09]), np.add(ties, [0, 0, 0.9]), ties, G)
     rig = bench("trifilar", strings=3, length=0.9, upper_radius=0.2, centre_offset=0.03)
     assert small_swing_period(rig, MASS * 0.09) == pytest.approx(period_of(body), rel=1e-10)
 
@@ -107,7 +107,7 @@ def test_three_parallel_strings_off_centre(azimuth: float) -> None:
 def test_strings_of_unequal_length() -> None:
     # L1 = 1, L2 = 1.1, d1 = d2 = 0.2, k = 0.15, g = 1: 1.69697 by the formula, 1.70188 exact (centre of mass at the ties)
     ties = np.array([[0.2, 0, 0], [-0.2, 0, 0.0]])
-    hooks = [*ties, [0, 0, 1.0], [0, 0, 1.1]]
+    hooks = np.add(ties, [[0, 0, 1.0], [0, 0, 1.1]])
     exact_rate = yaw(Body(1.0, np.diag([0.05, 0.16, 0.15]) ** 2, hooks, ties, 1.0))
     assert exact_rate == pytest.approx(1.70188, abs=5e-6)
     formula = unequal_stiffness(0.2, 0.2, (1.0, 1.1)) / 0.15**2
@@ -125,7 +125,7 @@ def test_the_limits_for_unequal_strings_hold_the_exact_modes(
     equal = (0.2**2 - offset**2) * G / 0.15**2
     for way in (1, -1):
         ties = np.array([[0.2 + offset, 0, depth], [offset - 0.2, 0, depth]])
-        hooks = [*ties, [0, 0, 1.0 + way * difference / 2], [0, 0, 1.0 - way * difference / 2]]
+        hooks = np.add(ties, [[0, 0, 1.0 + way * difference / 2], [0, 0, 1.0 - way * difference / 2]])
         rate = yaw(Body(MASS, MASS * np.diag([0.05, 0.16, 0.15]) ** 2, hooks, ties, G))
         assert abs(rate / equal - 1) < limit
 
